@@ -1,0 +1,405 @@
+"""Program: the chain as one function of the unknown, run over any kind of number.
+
+`real` takes a trial value and gives the residual as a float, or the Fault that the residual's
+cell would show. `array` does the same for a vector. Both run generated straight-line code
+(`xlroot.emit`); wherever that code meets anything but plain finite numbers, the interpreter
+computes the chain again for that trial value, so the answer is always the interpreter's.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Iterable, Mapping
+from dataclasses import dataclass
+from functools import cached_property
+from typing import TYPE_CHECKING, Any
+
+from xlroot.cells import Block, Cell
+from xlroot.chain import Chain
+from xlroot.emit import ARRAY, ELEMENT, REAL, Emitter, Expr, Opaque, Sort
+from xlroot.errors import Unsupported
+from xlroot.formula import Call, Node
+from xlroot.interpret import Mode, Scope, evaluate, formula_value, single
+from xlroot.kinds import array as array_kind
+from xlroot.kinds.real import OPERATORS, PRIMITIVES, join
+from xlroot.ledger import Ledger, array_result, grid_part
+from xlroot.values import Fault, Grid, Operand, Value, to_logical, to_number, to_text
+
+if TYPE_CHECKING:
+    import numpy as np
+
+BLOCK = 2048
+"""Trial values that the array kind computes at a time: vectors that stay in the cache."""
+
+
+class NotPlain(Exception):
+    """Compiled code met something that only the interpreter decides."""
+
+
+CAUGHT = (ArithmeticError, ValueError, NotPlain, Unsupported)
+"""What compiled code raises where the interpreter has to decide."""
+
+
+@dataclass(frozen=True, slots=True)
+class Frame:
+    """The contents of cells at one trial value: chain cells as given, others as held."""
+
+    ledger: Ledger
+    values: Mapping[Cell, Value]
+    moving: Callable[[Block], bool]
+
+    def value(self, cell: Cell) -> Value:
+        found = self.values.get(cell, _ABSENT)
+        return self.ledger.value(cell) if isinstance(found, _Absent) else found
+
+    def grid(self, block: Block) -> Grid:
+        if not self.moving(block):
+            return self.ledger.grid(block)
+        columns = range(block.left, block.right + 1)
+        rows = tuple(
+            tuple(self.value(Cell(block.sheet, row, column)) for column in columns)
+            for row in range(block.top, block.bottom + 1)
+        )
+        return Grid(rows, block)
+
+    def locate(self, text: str, home: Cell) -> Block | None:
+        return self.ledger.locate(text, home)
+
+    def own(self, node: Call, cell: Cell) -> Operand:
+        return self.ledger.own(node, cell)
+
+
+class _Absent:
+    pass
+
+
+_ABSENT = _Absent()
+
+
+class Program:
+    """A compiled chain; `source` is the generated code, for anyone who doubts it."""
+
+    def __init__(self, chain: Chain, ledger: Ledger) -> None:
+        self.chain = chain
+        self.ledger = ledger
+        self._chain_cells = frozenset((chain.unknown, *(step.cell for step in chain.steps)))
+        self._by_sheet: dict[str, list[Cell]] = {}
+        for cell in self._chain_cells:
+            self._by_sheet.setdefault(cell.sheet, []).append(cell)
+        self.variables = {chain.unknown: "v0"}
+        for step in chain.steps:
+            self.variables[step.cell] = f"v{len(self.variables)}"
+        self.sorts: dict[str, Sort] = {"v0": Sort.NUMBER}
+        self.growing: set[str] = set()
+        self.source = ""
+        self.real: Callable[[float], float | Fault] = self._compile_real()
+
+    # -- exact --------------------------------------------------------------------------------
+
+    def values_at(self, x: Value) -> dict[Cell, Value]:
+        """What every chain cell shows with the unknown at x, in calculation order.
+
+        Raises Unsupported, with the cell, where a value cannot be computed faithfully.
+        """
+        values: dict[Cell, Value] = {self.chain.unknown: x}
+        grids: dict[Cell, Grid] = {}
+        frame = Frame(self.ledger, values, self.moves)
+        for step in self.chain.steps:
+            if step.master is not None:
+                down, right = step.cell.row - step.master.row, step.cell.column - step.master.column
+                values[step.cell] = grid_part(grids[step.master], down, right)
+            elif step.block is not None:
+                grid = array_result(evaluate(step.node, Scope(step.cell, frame, Mode.ARRAY)))
+                grids[step.cell] = grid
+                values[step.cell] = grid_part(grid, 0, 0)
+            else:
+                values[step.cell] = formula_value(step.node, Scope(step.cell, frame))
+        return values
+
+    def exact(self, x: float) -> float | Fault:
+        """The residual at x by the interpreter."""
+        value = self.values_at(x)[self.chain.residual]
+        return Fault.VALUE if isinstance(value, str) else to_number(value)
+
+    def fault_at(self, x: float) -> tuple[Cell, Fault] | None:
+        """The first chain cell, in calculation order, whose fault reaches the residual at x."""
+        values = self.values_at(x)
+        fault = values[self.chain.residual]
+        for cell, value in values.items():
+            if isinstance(value, Fault) and value is fault:
+                return cell, value
+        return None
+
+    def moves(self, block: Block) -> bool:
+        """Whether a chain cell, or the unknown, lies in the block."""
+        return any(block.holds(cell) for cell in self._by_sheet.get(block.sheet, ()))
+
+    # -- compiled -----------------------------------------------------------------------------
+
+    def _emitter(
+        self, namespace: dict[str, object], *, sorts: dict[str, Sort], **others: Any
+    ) -> Emitter:
+        return Emitter(
+            chain=self.chain,
+            ledger=self.ledger,
+            namespace=namespace,
+            variables=self.variables,
+            sorts=sorts,
+            growing=self.growing,
+            part=self._part,
+            **others,
+        )
+
+    def _compile_real(self) -> Callable[[float], float | Fault]:
+        namespace = self._real_namespace()
+        emitter = self._emitter(namespace, dialect=REAL, sorts=self.sorts)
+        lines = []
+        for step in self.chain.steps:
+            name = self.variables[step.cell]
+            expr = self._step(emitter, step.cell)
+            self.sorts[name] = expr.sort
+            if expr.grows:
+                self.growing.add(name)
+            lines.append(f"{name} = {expr.text}")
+        result = self.variables[self.chain.residual]
+        if self.sorts[result] is not Sort.NUMBER:
+            lines.append(f"r = number_of({result})")
+            result = "r"
+        guards = list(dict.fromkeys(each for each in emitter.guards if each != result))
+        starting = [each for each in guards if each[0] in "gl"]
+        body = [f"{each} = 0.0" for each in starting] + lines
+        checks = [f"-1e999 < {result} < 1e999"]
+        if guards:
+            checks.append(f"-1e999 < {' + '.join(guards)} < 1e999")
+        body += [f"if {' and '.join(checks)}:", f"    return {result}"]
+        self.source = "\n".join(
+            [
+                "def residual(v0):",
+                "    try:",
+                *(f"        {line}" for line in body),
+                "    except CAUGHT:",
+                "        pass",
+                "    return exact(v0)",
+            ]
+        )
+        return self._made(self.source, namespace)
+
+    def _made(self, source: str, namespace: dict[str, object]) -> Callable[..., Any]:
+        try:
+            exec(compile(source, f"<chain of {self.chain.residual}>", "exec"), namespace)
+        except (RecursionError, MemoryError, SyntaxError):
+            # Beyond the compiler's own limits on nesting; the interpreter has none.
+            return self.exact
+        made = namespace["residual"]
+        assert callable(made)
+        return made
+
+    def _step(self, emitter: Emitter, cell: Cell) -> Expr:
+        step = self._steps[cell]
+        if step.master is not None:
+            down, right = cell.row - step.master.row, cell.column - step.master.column
+            return Expr(f"grid_part(grid_{self.variables[step.master]}, {down}, {right})", Sort.ANY)
+        if step.block is not None:
+            cells = tuple(c for c in self.variables if self._reads(step.node, c))
+            name = emitter.name("s", self._array_part(step.node, cell, cells))
+            grid = f"grid_{self.variables[cell]}"
+            call = f"{name}({', '.join(self.variables[c] for c in cells)})"
+            return Expr(f"grid_part({grid} := {call}, 0, 0)", Sort.ANY)
+        emitter.cell = cell
+        return emitter.formula(step.node, cell)
+
+    @cached_property
+    def _steps(self) -> dict[Cell, Any]:
+        return {step.cell: step for step in self.chain.steps}
+
+    @staticmethod
+    def _reads(node: Node, cell: Cell) -> bool:
+        from xlroot.bind import walk
+        from xlroot.formula import Area
+
+        return any(isinstance(each, Area) and each.block.holds(cell) for each in walk(node))
+
+    def _part(self, node: Node, cell: Cell, cells: tuple[Cell, ...]) -> Callable[..., Value]:
+        def part(*values: Value) -> Value:
+            frame = Frame(self.ledger, dict(zip(cells, values, strict=True)), self.moves)
+            scope = Scope(cell, frame)
+            return single(evaluate(node, scope), scope)
+
+        return part
+
+    def _array_part(self, node: Node, cell: Cell, cells: tuple[Cell, ...]) -> Callable[..., Grid]:
+        def part(*values: Value) -> Grid:
+            frame = Frame(self.ledger, dict(zip(cells, values, strict=True)), self.moves)
+            return array_result(evaluate(node, Scope(cell, frame, Mode.ARRAY)))
+
+        return part
+
+    def _real_namespace(self) -> dict[str, object]:
+        return {
+            **PRIMITIVES,
+            **_HELPERS,
+            "CAUGHT": CAUGHT,
+            "exact": self.exact,
+            "__builtins__": {},
+        }
+
+    # -- array --------------------------------------------------------------------------------
+
+    @cached_property
+    def _vector(self) -> Callable[..., Any] | None:
+        """The chain over vectors, giving the residual and a sum that is finite where it is
+        sound; None where a step holds no numbers."""
+        namespace: dict[str, object] = {**array_kind.primitives(), **array_kind.helpers()}
+        scalars = self._real_namespace()
+
+        def vectorised(text: str, names: tuple[str, ...]) -> Callable[..., object]:
+            function = eval(f"lambda {', '.join(names)}: {text}", scalars)
+            made: Callable[..., object] = array_kind.elementwise(function, CAUGHT)
+            return made
+
+        sorts = dict(self.sorts)
+        element = self._emitter(scalars, dialect=ELEMENT, sorts=sorts)
+        emitter = self._emitter(
+            namespace, dialect=ARRAY, sorts=sorts, element=element, vectorised=vectorised
+        )
+        lines = []
+        for step in self.chain.steps:
+            if step.master is not None or step.block is not None:
+                return None
+            try:
+                expr = emitter.plain(step.node, step.cell)
+            except Opaque:
+                return None
+            name = self.variables[step.cell]
+            lines.append(f"{name} = {expr.text}")
+            sorts[name] = expr.sort
+        result = self.variables[self.chain.residual]
+        guards = list(dict.fromkeys(emitter.guards))
+        starting = [f"{each} = 0.0" for each in guards if each[0] in "gl"]
+        ending = f"return {result}, {' + '.join([result, *guards])}"
+        body = [f"    {line}" for line in (*starting, *lines, ending)]
+        exec(
+            compile("\n".join(["def residual(v0):", *body]), "<chain over vectors>", "exec"),
+            namespace,
+        )
+        made = namespace["residual"]
+        assert callable(made)
+        return made
+
+    def array(self, xs: Iterable[float]) -> tuple[np.ndarray[Any, Any], dict[int, Fault]]:
+        """The residual at every trial value; NaN, and its fault by position, where it has one."""
+        import numpy as np
+
+        trial = np.asarray(xs if isinstance(xs, np.ndarray) else list(xs), dtype=float)
+        result = np.full(trial.shape, np.nan)
+        sound = np.zeros(trial.shape, dtype=bool)
+        vector = self._vector
+        if vector is not None:
+            with np.errstate(all="ignore"):
+                for start in range(0, len(trial), BLOCK):
+                    part = slice(start, start + BLOCK)
+                    values, checked = vector(trial[part])
+                    result[part] = values
+                    sound[part] = np.isfinite(checked)
+        faults: dict[int, Fault] = {}
+        for position in np.flatnonzero(~sound).tolist():
+            value = self.real(float(trial[position]))
+            if isinstance(value, Fault):
+                faults[position] = value
+                result[position] = np.nan
+            else:
+                result[position] = value
+        return result, faults
+
+
+def _number_of(value: object) -> float:
+    if type(value) is float:
+        return value
+    if value is None or isinstance(value, (bool, str)):
+        number = to_number(value)
+        if type(number) is float:
+            return number
+    raise NotPlain
+
+
+def _truth(value: object) -> bool:
+    if isinstance(value, bool):
+        return value
+    if value is None or isinstance(value, (float, str)):
+        logical = to_logical(value)
+        if isinstance(logical, bool):
+            return logical
+    raise NotPlain
+
+
+def _text_of(value: object) -> str:
+    if isinstance(value, str):
+        return value
+    if value is None or isinstance(value, (float, bool)):
+        text = to_text(value)
+        if isinstance(text, str):
+            return text
+    raise NotPlain
+
+
+def _one(value: object) -> object:
+    if isinstance(value, (Grid, Fault)):
+        raise NotPlain
+    return value
+
+
+def _flat(value: object) -> object:
+    if isinstance(value, Grid):
+        raise NotPlain
+    return value
+
+
+def _finite(value: float) -> float:
+    if math.isfinite(value):
+        return value
+    raise NotPlain
+
+
+def _plain(value: object) -> float:
+    if type(value) is float:
+        return value
+    raise NotPlain
+
+
+def _fail() -> float:
+    raise NotPlain
+
+
+def _total(terms: tuple[float, ...]) -> float:
+    result = 0.0
+    for term in terms:
+        result += term
+    return result
+
+
+_HELPERS: dict[str, object] = {
+    "number_of": _number_of,
+    "truth": _truth,
+    "text_of": _text_of,
+    "one": _one,
+    "flat": _flat,
+    "finite": _finite,
+    "plain": _plain,
+    "fail": _fail,
+    "total": _total,
+    "product": math.prod,
+    "least": min,
+    "most_of": max,
+    "negated": lambda value: not value,
+    "raised": math.pow,
+    "join": join,
+    "Grid": Grid,
+    "grid_part": grid_part,
+    "equal": OPERATORS["="],
+    "differ": OPERATORS["<>"],
+    "less": OPERATORS["<"],
+    "most": OPERATORS["<="],
+    "more": OPERATORS[">"],
+    "least_of": OPERATORS[">="],
+}
+"""What compiled text calls besides the kind's primitives."""

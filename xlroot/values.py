@@ -1,0 +1,125 @@
+"""What a cell can hold, and how one sort of content reads as another.
+
+A `Value` is a float, a text, a bool, `None` for a blank cell, or a `Fault`. A `Grid` is a
+rectangle of values: the content of a range, or an array. Conversions follow the rules that
+spreadsheets share (OpenFormula, OASIS ODF 1.3 part 4, section 6.3): blank reads as 0 or as the
+empty text, TRUE as 1, a text that looks like a number as that number, anything else as #VALUE!.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from enum import Enum
+from typing import NamedTuple
+
+from xlroot.cells import Block
+
+
+class Fault(Enum):
+    """An error value that a formula can give; `str` is the text a cell shows."""
+
+    NULL = "#NULL!"
+    DIV0 = "#DIV/0!"
+    VALUE = "#VALUE!"
+    REF = "#REF!"
+    NAME = "#NAME?"
+    NUM = "#NUM!"
+    NA = "#N/A"
+    SPILL = "#SPILL!"
+    CALC = "#CALC!"
+
+    def __str__(self) -> str:
+        return str(self.value)
+
+
+FAULTS: dict[str, Fault] = {fault.value: fault for fault in Fault}
+"""Faults by the text that a cell shows."""
+
+Value = float | str | bool | None | Fault
+
+
+class Grid(NamedTuple):
+    """A rectangle of values, row by row, never empty; `block` is where it stands, if in a sheet.
+
+    A grid with a block is a reference's content, one without is an array: functions that treat
+    the two differently (text and logicals in SUM, COUNT, …) look at `block`.
+    """
+
+    rows: tuple[tuple[Value, ...], ...]
+    block: Block | None = None
+
+    @property
+    def height(self) -> int:
+        return len(self.rows)
+
+    @property
+    def width(self) -> int:
+        return len(self.rows[0])
+
+    def flat(self) -> Iterator[Value]:
+        """All values, row by row."""
+        for row in self.rows:
+            yield from row
+
+
+Operand = Value | Grid
+
+
+def read_number(text: str) -> float | Fault:
+    """The number that a text reads as, or #VALUE!: decimal, exponent, percent, date or time."""
+    stripped = text.strip()
+    try:
+        number = float(stripped)
+    except ValueError:
+        from xlroot.texts import read_special_number
+
+        return read_special_number(stripped)
+    if not math.isfinite(number) or "_" in stripped:
+        return Fault.VALUE
+    return number
+
+
+def to_number(value: Value) -> float | Fault:
+    """The value as a number; blank is 0, TRUE is 1, text is read, a fault stays."""
+    if type(value) is float:
+        return value
+    if value is None:
+        return 0.0
+    if isinstance(value, bool):
+        return 1.0 if value else 0.0
+    if isinstance(value, str):
+        return read_number(value)
+    return value
+
+
+def to_text(value: Value) -> str | Fault:
+    """The value as text, the way `&` joins it: numbers in the general format."""
+    if isinstance(value, str):
+        return value
+    if value is None:
+        return ""
+    if isinstance(value, bool):
+        return "TRUE" if value else "FALSE"
+    if isinstance(value, Fault):
+        return value
+    from xlroot.texts import general_format
+
+    return general_format(value)
+
+
+def to_logical(value: Value) -> bool | Fault:
+    """The value as a logical; blank is FALSE, a number is TRUE unless 0, only the texts TRUE
+    and FALSE are read."""
+    if isinstance(value, bool):
+        return value
+    if value is None:
+        return False
+    if isinstance(value, Fault):
+        return value
+    if isinstance(value, str):
+        upper = value.strip().upper()
+        if upper == "TRUE":
+            return True
+        return False if upper == "FALSE" else Fault.VALUE
+    return value != 0.0
