@@ -53,8 +53,12 @@ CHAINS: list[tuple[str, dict[str, Content]]] = [
     ("AND, OR, NOT", {"A3": "=IF(AND(A1>0,NOT(A1>2)),1,2)+IF(OR(A1<-1,A1>3),10,20)"}),
     ("sums over chain and held cells", {"B1": 2, "B2": "=A1*2", "B3": "x", "A3": "=SUM(B1:B4,A1)"}),
     ("extremes", {"B1": 2, "B2": "=A1*2", "A3": "=MAX(B1:B2,-1)-MIN(A1,B1:B2)"}),
-    ("a table lookup", {f"C{n}": n for n in range(1, 6)} | {f"D{n}": n * n for n in range(1, 6)}
-     | {"A2": "=MATCH(A1,C1:C5,1)", "A3": "=INDEX(D1:D5,A2)+VLOOKUP(A1,C1:D5,2,TRUE)"}),
+    (
+        "a table lookup",
+        {f"C{n}": n for n in range(1, 6)}
+        | {f"D{n}": n * n for n in range(1, 6)}
+        | {"A2": "=MATCH(A1,C1:C5,1)", "A3": "=INDEX(D1:D5,A2)+VLOOKUP(A1,C1:D5,2,TRUE)"},
+    ),
     ("LET", {"A3": "=LET(a,A1*2,b,a+1,a*b)-LET(c,3,c)"}),
     ("LAMBDA", {"A3": "=LAMBDA(x,x^2-A1)(A1)"}),
     ("SUMPRODUCT", {"B1": 1, "B2": 2, "C1": "=A1", "C2": 3, "A3": "=SUMPRODUCT(B1:B2,C1:C2)-A1"}),
@@ -75,7 +79,9 @@ def test_compiled_code_gives_what_the_interpreter_gives(
 
 
 def test_constant_parts_are_folded() -> None:
-    program = program_of({"A1": 1, "B1": 2, "B2": "=B1^10", "A2": "=A1*(B2+SQRT(B1*2))"}, "A2", "A1")
+    program = program_of(
+        {"A1": 1, "B1": 2, "B2": "=B1^10", "A2": "=A1*(B2+SQRT(B1*2))"}, "A2", "A1"
+    )
     assert "v0*1026.0" in program.source
 
 
@@ -96,7 +102,9 @@ def expressions() -> st.SearchStrategy[str]:
     def grow(inner: st.SearchStrategy[str]) -> st.SearchStrategy[str]:
         pair = st.tuples(inner, inner)
         return st.one_of(
-            st.tuples(st.sampled_from("+-*/^"), inner, inner).map(lambda t: f"({t[1]}{t[0]}{t[2]})"),
+            st.tuples(st.sampled_from("+-*/^"), inner, inner).map(
+                lambda t: f"({t[1]}{t[0]}{t[2]})"
+            ),
             st.tuples(st.sampled_from(["=", "<>", "<", "<=", ">", ">="]), inner, inner, inner).map(
                 lambda t: f"IF({t[1]}{t[0]}{t[2]},{t[3]},{t[1]})"
             ),

@@ -7,14 +7,12 @@ of one sheet, or as a defined name. Every error derives from `XlrootError`.
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import replace
 from pathlib import Path
 
 from xlroot.book import Book
 from xlroot.cells import Cell
 from xlroot.depend import Bindings
 from xlroot.docket import Docket
-from xlroot.errors import QuestionError
 from xlroot.hosts.saved import read_book
 from xlroot.ledger import Ledger, Policy, Volatile
 from xlroot.question import Question
@@ -122,8 +120,9 @@ def solve_book(source: Source, *, progress: Progress | None = None) -> tuple[Rec
     return tuple(found.values())
 
 
-def scan(source: Source, *, residual: str, unknown: str, low: float, high: float,
-         points: int = 201) -> Look:
+def scan(
+    source: Source, *, residual: str, unknown: str, low: float, high: float, points: int = 201
+) -> Look:
     """The look: where the residual changes sign, faults, jumps, over the bracket."""
     book = _book(source)
     asked = question(book, residual=residual, unknown=unknown, low=low, high=high)
@@ -135,9 +134,7 @@ def scan(source: Source, *, residual: str, unknown: str, low: float, high: float
     return look(lambda xs: [real(x) for x in xs], low, high, points=points)
 
 
-def evaluate(
-    source: Source, cell: str, given: Mapping[str, Value | int] | None = None
-) -> Value:
+def evaluate(source: Source, cell: str, given: Mapping[str, Value | int] | None = None) -> Value:
     """A cell's value computed from its formulas, with the content of some cells replaced.
 
     Saved values are used for neither the cell nor its precedents. Gives a float, a text, a bool,
@@ -150,7 +147,5 @@ def evaluate(
     for address, value in (given or {}).items():
         whole = isinstance(value, int) and not isinstance(value, bool)
         contents[book.cell(address, target.sheet)] = float(value) if whole else value  # type: ignore[arg-type]
-    ledger = Ledger(
-        Bindings(book), Policy.COMPUTED, given=contents, volatile=Volatile.PRESENT
-    )
+    ledger = Ledger(Bindings(book), Policy.COMPUTED, given=contents, volatile=Volatile.PRESENT)
     return ledger.value(target)

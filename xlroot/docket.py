@@ -118,9 +118,7 @@ class Docket:
         except QuestionError as error:
             return REFUSAL + str(error)
 
-    def _read(
-        self, node: Call, arguments: tuple[Argument, ...], cell: Cell
-    ) -> Given | Fault:
+    def _read(self, node: Call, arguments: tuple[Argument, ...], cell: Cell) -> Given | Fault:
         required = sum(each.presence is Presence.REQUIRED for each in arguments)
         if not required <= len(node.arguments) <= len(arguments):
             raise QuestionError(
@@ -143,9 +141,7 @@ class Docket:
                 continue
             read = to_number(value) if argument.wants is Wants.NUMBER else to_text(value)
             if isinstance(read, Fault) and not isinstance(value, Fault):
-                raise QuestionError(
-                    f"{node.name} needs {argument.wants.value} as {argument.name}"
-                )
+                raise QuestionError(f"{node.name} needs {argument.wants.value} as {argument.name}")
             if isinstance(read, Fault):
                 return read
             given[argument.name] = read

@@ -320,9 +320,7 @@ class Emitter:
             return Expr(f"({self.kept(left)} {sign} {self.kept(right)})", Sort.LOGICAL)
         if self.dialect.vector:
             raise Opaque
-        return Expr(
-            f"truth({_NAMED[operator]}({left.text}, {right.text}))", Sort.LOGICAL
-        )
+        return Expr(f"truth({_NAMED[operator]}({left.text}, {right.text}))", Sort.LOGICAL)
 
     # -- conversions --------------------------------------------------------------------------
 

@@ -6,12 +6,12 @@ from dataclasses import dataclass
 from datetime import datetime
 
 from xlroot.cells import Cell
-from xlroot.versions import versions
 from xlroot.question import Question
 from xlroot.scan import Look
 from xlroot.search import Iterate
 from xlroot.values import Value
 from xlroot.verdict import Status, Verdict
+from xlroot.versions import versions
 
 CAUTIONS = (
     "The held values, the formulas and the choice of bracket are the engineer's; xlroot shows "

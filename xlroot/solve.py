@@ -7,23 +7,23 @@ record, whose root is None.
 from __future__ import annotations
 
 import math
+from collections.abc import Iterator
 from dataclasses import dataclass
 from datetime import UTC, datetime
 
 from xlroot import baseline, methods, search, stopping
 from xlroot.book import Book, Unsaved
 from xlroot.cells import Cell
-from xlroot.chain import Chain, trace
+from xlroot.chain import trace
 from xlroot.depend import Bindings
-from xlroot.errors import QuestionError, Unsupported
+from xlroot.errors import IndependentError, QuestionError, Unsupported
 from xlroot.fingerprint import fingerprint
 from xlroot.labels import label_of, unit_of
 from xlroot.ledger import Ledger, Policy
-from xlroot.methods import Family, Method
+from xlroot.nature import Nature
 from xlroot.program import Program
-from xlroot.provenance import provenance
 from xlroot.question import Question
-from xlroot.record import Line, Record, SecondOpinion
+from xlroot.record import Line, Provenance, Record, SecondOpinion
 from xlroot.scan import Look, look
 from xlroot.search import Run
 from xlroot.stopping import SafeSide, Tolerance
@@ -53,35 +53,22 @@ class Desk:
         ledger = Ledger(bindings)
         return cls(bindings, ledger, ledger)
 
+
+@dataclass(frozen=True, slots=True)
+class Prepared:
+    """A compiled chain, what has to be said of it, and why it may not be trusted, if so."""
+
+    program: Program
+    warnings: tuple[str, ...]
+    refusal: Unsupported | None
+
     @property
     def book(self) -> Book:
         return self.bindings.book
 
 
-def solve(desk: Desk, question: Question, *, cell: Cell | None = None) -> Record:
-    """The record of one question; `cell` is the worksheet cell that asked it, if one did.
-
-    Raises QuestionError, or MethodError, where the question cannot be asked.
-    """
-    present = _ask(desk.book, question)
-    story = _Story(desk, question, cell, present, datetime.now(UTC))
-    held = Ledger(desk.bindings, Policy.COMPUTED) if question.recalculate else desk.present
-    try:
-        chain = trace(desk.bindings, held, question.residual, question.unknown)
-    except Unsupported as refusal:
-        return story.refused(refusal.reason, refusal.cell)
-    try:
-        program = Program(chain, held)
-        checked = _baseline(desk, program, question, present)
-        if checked is not None and checked.difference is not None:
-            return story.refused(str(checked.difference), str(checked.difference.cell), program)
-        return story.solved(program, _warnings(chain, checked, question))
-    except Unsupported as refusal:
-        return story.refused(refusal.reason, refusal.cell)
-
-
-def _ask(book: Book, question: Question) -> Value:
-    """The unknown's present value, once the question makes sense; QuestionError otherwise."""
+def ask(book: Book, question: Question) -> None:
+    """Raises QuestionError, or MethodError, where the question makes no sense in this book."""
     low, high, unknown, residual = question.low, question.high, question.unknown, question.residual
     if book.formula(unknown) is not None:
         raise QuestionError(
@@ -105,67 +92,243 @@ def _ask(book: Book, question: Question) -> Value:
         )
     if question.start is not None and not low <= question.start <= high:
         raise QuestionError(f"the start {question.start:.15g} lies outside the limits")
+    if question.method.strip().casefold() != methods.AUTOMATIC:
+        methods.find(question.method)
     present = book.saved(unknown)
     if isinstance(present, (str, bool, Fault, Unsaved)):
         raise QuestionError(f"the unknown {unknown} holds no number")
-    return present
 
 
-def _baseline(
-    desk: Desk, program: Program, question: Question, present: Value
-) -> baseline.Baseline | None:
-    if question.recalculate:
-        return None
-    if desk.saved is desk.present:
-        return baseline.check(program, present)
-    return baseline.check(Program(program.chain, desk.saved), present)
+def prepare(desk: Desk, residual: Cell, unknown: Cell, *, recalculate: bool = False) -> Prepared:
+    """The compiled chain between two cells, held against the sheet's saved values.
 
-
-def _warnings(
-    chain: Chain, checked: baseline.Baseline | None, question: Question
-) -> tuple[str, ...]:
+    Raises IndependentError where no formulas run between them, Unsupported, with the cell, where
+    the chain cannot be evaluated faithfully.
+    """
+    held = Ledger(desk.bindings, Policy.COMPUTED) if recalculate else desk.present
+    chain = trace(desk.bindings, held, residual, unknown)
+    program = Program(chain, held)
     warnings = []
-    if question.recalculate:
+    refusal = None
+    if recalculate:
         warnings.append("No saved value of a formula was used: all were computed by xlroot.")
-    elif checked is not None and checked.unsaved:
-        warnings.append(
-            f"{checked.unsaved} of {len(chain.steps)} chain cells were saved without a value, so "
-            "the formulas could not be held against the host there."
-        )
+    else:
+        own = program if desk.saved is desk.present else Program(chain, desk.saved)
+        present = desk.book.saved(unknown)
+        assert not isinstance(present, Unsaved)
+        checked = baseline.check(own, present)
+        if checked.difference is not None:
+            refusal = Unsupported(str(checked.difference), str(checked.difference.cell))
+        elif checked.unsaved:
+            warnings.append(
+                f"{checked.unsaved} of {len(chain.steps)} chain cells were saved without a value; "
+                "there the formulas could not be held against the host."
+            )
     if chain.circular:
         named = ", ".join(str(cell) for cell in chain.circular[:4])
         warnings.append(
             f"Held cells lie in a circular reference ({named}); their saved values are used."
         )
+    return Prepared(program, tuple(warnings), refusal)
+
+
+def solve(desk: Desk, question: Question, *, cell: Cell | None = None) -> Record:
+    """The record of one question; `cell` is the worksheet cell that asked it, if one did.
+
+    Raises QuestionError, or MethodError, where the question cannot be asked.
+    """
+    ask(desk.book, question)
+    try:
+        prepared = prepare(
+            desk, question.residual, question.unknown, recalculate=question.recalculate
+        )
+    except IndependentError as error:
+        return refused_record(desk, question, str(error), cell=cell)
+    except Unsupported as refusal:
+        return refused_record(desk, question, refusal.reason, refusal.cell, cell=cell)
+    if prepared.refusal is not None:
+        reason, where = prepared.refusal.reason, prepared.refusal.cell
+        return refused_record(desk, question, reason, where, cell=cell, prepared=prepared)
+    try:
+        return _searched(desk, question, cell, prepared)
+    except Unsupported as refusal:
+        return refused_record(
+            desk, question, refusal.reason, refusal.cell, cell=cell, prepared=prepared
+        )
+
+
+def _searched(desk: Desk, question: Question, cell: Cell | None, prepared: Prepared) -> Record:
+    program, low, high = prepared.program, question.low, question.high
+    tolerance = tolerance_of(question)
+    method, note = methods.choose(question.method)
+    run = search.run(method, program.real, low, high, Tolerance(tolerance), guess=question.start)
+    shape = look(lambda xs: [program.real(x) for x in xs], low, high, points=LOOK_POINTS)
+    verdict = judge(run, shape)
+    if verdict.status is Status.REFUSED:
+        where = _fault_cell(program, run)
+        if where is not None:
+            verdict = verdict._replace(cell=where)
+        return _record(desk, question, cell, prepared, verdict, (run, shape, note))
+    return _record(desk, question, cell, prepared, verdict, (run, shape, note))
+
+
+def refused_record(
+    desk: Desk,
+    question: Question,
+    reason: str,
+    where: str | None = None,
+    *,
+    cell: Cell | None = None,
+    prepared: Prepared | None = None,
+) -> Record:
+    """A record without a root: the reason, the cell, and the chain as far as it is known."""
+    told = f"{where}: {reason}" if where and where not in reason else reason
+    verdict = Verdict(Status.REFUSED, None, None, told, where)
+    return _record(desk, question, cell, prepared, verdict, None)
+
+
+def tolerance_of(question: Question) -> float:
+    """The tolerance stated, or the customary one."""
+    if question.tolerance is not None:
+        return question.tolerance
+    return stopping.customary(question.low, question.high)
+
+
+def _record(
+    desk: Desk,
+    question: Question,
+    cell: Cell | None,
+    prepared: Prepared | None,
+    verdict: Verdict,
+    searched: tuple[Run, Look, str] | None,
+) -> Record:
+    book, unknown, residual = desk.book, question.unknown, question.residual
+    program = prepared.program if prepared is not None else None
+    run, shape, note = searched if searched is not None else (None, None, "")
+    solved = run is not None and verdict.status is not Status.REFUSED
+    root = run.root_on(question.safe_side) if run is not None and solved else None
+    present = book.saved(unknown)
+    at: Value = root if root is not None else None if isinstance(present, Unsaved) else present
+    values = _values(program, at)
+    f_root = values.get(residual)
+    label = label_of(book, unknown)
+    method = run.method.name if run is not None else question.method
+    if run is not None:
+        note = "; ".join(each for each in (note, *run.notes) if each)
+    return Record(
+        cell=cell,
+        question=question,
+        statement=_statement(book, question),
+        label=label,
+        unit=unit_of(book, unknown),
+        residual_label=label_of(book, residual),
+        residual_unit=unit_of(book, residual),
+        present=None if isinstance(present, Unsaved) else present,
+        verdict=verdict,
+        root=root,
+        residual_at_root=f_root if solved and isinstance(f_root, float) else None,
+        slope_at_root=_slope(program, question, root),
+        method=method,
+        method_note=note,
+        tolerance=tolerance_of(question) if question.low < question.high else math.nan,
+        predicted_iterations=None if run is None else run.predicted,
+        iterations=0 if run is None else run.iterations,
+        evaluations=0 if run is None else run.evaluations,
+        iterates=() if run is None else run.iterates,
+        contraction=None if run is None else run.contraction,
+        order=None if run is None else run.order,
+        second=_second(program, question, run, root),
+        look=shape,
+        steps=() if program is None else tuple(_steps(book, program, values)),
+        held=() if program is None else tuple(_held(book, program)),
+        warnings=_warned(prepared, run, question),
+        fingerprint=""
+        if program is None
+        else fingerprint(program.chain, program.ledger, question, method),
+        provenance=Provenance(book.title, book.digest, datetime.now(UTC)),
+    )
+
+
+def _statement(book: Book, question: Question) -> str:
+    def named(cell: Cell) -> str:
+        label = label_of(book, cell)
+        return f"{label} ({cell})" if label else str(cell)
+
+    unit = unit_of(book, question.unknown)
+    tail = f" {unit}" if unit else ""
+    return (
+        f"Find {named(question.unknown)} between {question.low:.12g} and "
+        f"{question.high:.12g}{tail} so that {named(question.residual)} becomes zero."
+    )
+
+
+def _values(program: Program | None, at: Value) -> dict[Cell, Value]:
+    if program is None:
+        return {}
+    try:
+        return program.values_at(at)
+    except Unsupported:
+        return {}
+
+
+def _slope(program: Program | None, question: Question, root: float | None) -> float | None:
+    """d(residual)/d(unknown) by central difference within the bracket."""
+    if program is None or root is None:
+        return None
+    width = question.high - question.low
+    step = 6e-6 * max(abs(root), 1e-3 * width)
+    left, right = max(question.low, root - step), min(question.high, root + step)
+    f_left, f_right = program.real(left), program.real(right)
+    if isinstance(f_left, Fault) or isinstance(f_right, Fault) or left >= right:
+        return None
+    return (f_right - f_left) / (right - left)
+
+
+def _second(
+    program: Program | None, question: Question, run: Run | None, root: float | None
+) -> SecondOpinion | None:
+    """The same question by halving, or by Chandrupatla's method where it was halved already."""
+    if program is None or run is None or root is None:
+        return None
+    crossing = run.enclosure
+    name = "Chandrupatla" if run.method.name == "bisection" else "bisection"
+    other = search.run(
+        methods.find(name),
+        program.real,
+        question.low,
+        question.high,
+        Tolerance(tolerance_of(question)),
+    )
+    if crossing is None or other.root is None or other.nature is not Nature.ROOT:
+        return SecondOpinion(name, None, None)
+    return SecondOpinion(name, other.root, other.root - root)
+
+
+def _steps(book: Book, program: Program, values: dict[Cell, Value]) -> Iterator[Line]:
+    for step in program.chain.steps:
+        text = f"={step.text}" if step.text else f"(part of {step.master})"
+        value = values.get(step.cell)
+        yield Line(step.cell, label_of(book, step.cell), unit_of(book, step.cell), text, value)
+
+
+def _held(book: Book, program: Program) -> Iterator[Line]:
+    for cell in program.chain.held:
+        formula = book.formula(cell)
+        text = "" if formula is None else f"={formula.text}"
+        value = program.ledger.value(cell)
+        yield Line(cell, label_of(book, cell), unit_of(book, cell), text, value)
+
+
+def _warned(prepared: Prepared | None, run: Run | None, question: Question) -> tuple[str, ...]:
+    warnings = list(prepared.warnings) if prepared is not None else []
+    if run is not None and run.root is not None and question.safe_side is not SafeSide.NONE:
+        if run.enclosure is None:
+            warnings.append("No sign change was found, so the safe side could not be chosen.")
     return tuple(warnings)
 
 
-@dataclass(frozen=True, slots=True)
-class _Story:
-    """One question on its way to a record."""
-
-    desk: Desk
-    question: Question
-    cell: Cell | None
-    present: Value
-    time: datetime
-
-    def solved(self, program: Program, warnings: tuple[str, ...]) -> Record:
-        question = self.question
-        shape = look(lambda xs: [program.real(x) for x in xs], question.low, question.high,
-                     points=LOOK_POINTS)
-        method, note = methods.choose(question.method, shape.first_value, shape.last_value)
-        tolerance = self.tolerance
-        run = search.run(
-            method,
-            program.real,
-            question.low,
-            question.high,
-            Tolerance(tolerance),
-            guess=question.start,
-        )
-        verdict = judge(run, shape)
-        if verdict.status is Status.REFUSED:
-            return self.refused(verdict.reason, _fault_cell(program, run), program, run, shape)
-        root = run.root_on(question.safe_side)
-        return self._record(program, warnings, method, note, run, shape, verdict, root)
+def _fault_cell(program: Program, run: Run) -> str | None:
+    if run.fault is None:
+        return None
+    found = program.fault_at(run.fault[0])
+    return None if found is None else str(found[0])

@@ -85,7 +85,9 @@ REFUSAL = "xlroot: "
 """How the text of a refused solve begins."""
 
 _RESIDUAL = Argument("residual", Wants.CELL, "the formula cell to be driven to zero")
-_UNKNOWN = Argument("unknown", Wants.CELL, "the input cell whose value is sought; it holds a number")
+_UNKNOWN = Argument(
+    "unknown", Wants.CELL, "the input cell whose value is sought; it holds a number"
+)
 _LOW = Argument("low", Wants.NUMBER, "the low end of the bracket, in the unknown's unit")
 _HIGH = Argument("high", Wants.NUMBER, "the high end of the bracket, in the unknown's unit")
 _METHOD = Argument(
@@ -277,4 +279,3 @@ FUNCTIONS: tuple[WorksheetFunction, ...] = (
 
 BY_NAME = {function.name: function for function in FUNCTIONS}
 """The worksheet functions by name."""
-

@@ -165,4 +165,14 @@ def _caller() -> str:
     return str(sys._getframe(2).f_globals["__name__"])
 
 
-__all__ = ["Entry", "Fault", "Fold", "Gives", "Takes", "Trait", "by_form", "entries_of", "worksheet"]
+__all__ = [
+    "Entry",
+    "Fault",
+    "Fold",
+    "Gives",
+    "Takes",
+    "Trait",
+    "by_form",
+    "entries_of",
+    "worksheet",
+]

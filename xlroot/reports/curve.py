@@ -1,0 +1,126 @@
+"""What there is to draw of a record: the residual over the bracket, and how the search narrowed.
+
+Plots share these so that every report shows the same picture.
+"""
+
+from __future__ import annotations
+
+import math
+from typing import NamedTuple
+
+from xlroot.record import Record
+
+Point = tuple[float, float]
+
+SPIKE = 8.0
+"""The picture is cut off where the largest residual exceeds this many times the magnitude that
+nine of ten trial values stay below (own choice): a pole would press everything else flat."""
+
+
+class Curve(NamedTuple):
+    """The residual over the bracket.
+
+    `pieces` are runs of neighbouring trial values; between them the residual cannot be evaluated
+    or runs off the picture. `bottom` and `top` bound the picture and hold 0.
+    """
+
+    pieces: tuple[tuple[Point, ...], ...]
+    iterates: tuple[Point, ...]
+    root: Point | None
+    left: float
+    right: float
+    bottom: float
+    top: float
+    clipped: bool
+    """Whether the residual leaves the picture somewhere."""
+    faults: tuple[float, ...]
+    """Trial values at which the residual cannot be evaluated."""
+
+
+class Narrowing(NamedTuple):
+    """A positive length by iteration, for a logarithmic axis; `title` says which length."""
+
+    title: str
+    points: tuple[tuple[int, float], ...]
+
+
+def curve(record: Record) -> Curve | None:
+    """The residual over the bracket; None where it was looked at nowhere."""
+    asked = record.question
+    samples = _samples(record)
+    values = [f for _, f in samples if f is not None]
+    iterates = tuple(
+        (row.x, row.f)
+        for row in record.iterates
+        if isinstance(row.f, float) and math.isfinite(row.f) and asked.low <= row.x <= asked.high
+    )
+    if not values:
+        return None
+    bottom, top, clipped = _limits(values)
+    root = None
+    if record.root is not None:
+        root = (record.root, record.residual_at_root or 0.0)
+    return Curve(
+        pieces=_pieces(samples, bottom, top),
+        iterates=tuple(point for point in iterates if bottom <= point[1] <= top),
+        root=root,
+        left=asked.low,
+        right=asked.high,
+        bottom=bottom,
+        top=top,
+        clipped=clipped,
+        faults=tuple(x for x, f in samples if f is None),
+    )
+
+
+def _samples(record: Record) -> list[tuple[float, float | None]]:
+    """Trial values in order, None where the residual has no finite value."""
+    if record.look is None:
+        return []
+    found = dict(record.look.samples)
+    return [
+        (x, f if isinstance(f, float) and math.isfinite(f) else None)
+        for x, f in sorted(found.items(), key=lambda sample: sample[0])
+    ]
+
+
+def _limits(values: list[float]) -> tuple[float, float, bool]:
+    sizes = sorted(abs(value) for value in values)
+    usual = sizes[len(sizes) * 9 // 10]
+    bottom, top = min(*values, 0.0), max(*values, 0.0)
+    if bottom == top:
+        return -1.0, 1.0, False
+    if not usual or sizes[-1] <= SPIKE * usual:
+        return bottom, top, False
+    limit = 2.0 * usual
+    return max(bottom, -limit), min(top, limit), True
+
+
+def _pieces(
+    samples: list[tuple[float, float | None]], bottom: float, top: float
+) -> tuple[tuple[Point, ...], ...]:
+    pieces: list[list[Point]] = [[]]
+    for x, f in samples:
+        if f is None or not bottom <= f <= top:
+            pieces.append([])
+        else:
+            pieces[-1].append((x, f))
+    return tuple(tuple(piece) for piece in pieces if piece)
+
+
+def narrowing(record: Record) -> Narrowing | None:
+    """The bracket's width by iteration, or the step's length for a method without a bracket."""
+    rows = record.iterates
+    widths = {
+        row.n: row.high - row.low
+        for row in rows
+        if row.low is not None and row.high is not None and row.high > row.low
+    }
+    if len(widths) > 1:
+        return Narrowing("Bracket width by iteration", tuple(widths.items()))
+    steps = tuple(
+        (after.n, abs(after.x - before.x))
+        for before, after in zip(rows, rows[1:], strict=False)
+        if after.x != before.x
+    )
+    return Narrowing("Step by iteration", steps) if len(steps) > 1 else None
