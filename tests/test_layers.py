@@ -38,7 +38,7 @@ ORDER = [
     "scan",
     "verdict",
     "record",
-    "solve",
+    "solving",
     "reports",
     "hosts",
     "worksheet",

@@ -18,8 +18,8 @@ from xlroot.ledger import Ledger, Policy, Volatile
 from xlroot.question import Question
 from xlroot.record import Record
 from xlroot.scan import Look, look
-from xlroot.solve import Desk, ask, prepare
-from xlroot.solve import solve as solve_question
+from xlroot.solving import Desk, ask, prepare
+from xlroot.solving import solve as solve_question
 from xlroot.stopping import SafeSide
 from xlroot.values import Value
 
@@ -110,14 +110,9 @@ def solve_book(source: Source, *, progress: Progress | None = None) -> tuple[Rec
     share it, and it carries the cell of the XLROOT formula where there is one. In the order in
     which the solves depend on each other.
     """
-    cases = Docket.of(_book(source)).settle(progress)
-    found: dict[Question, Record] = {}
-    for case in cases:
-        for record in case.records:
-            known = found.get(record.question)
-            if known is None or (not known.is_root and record.is_root):
-                found[record.question] = record
-    return tuple(found.values())
+    docket = Docket.of(_book(source))
+    docket.settle(progress)
+    return docket.records()
 
 
 def scan(

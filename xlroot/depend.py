@@ -147,9 +147,11 @@ class Dependence:
 
     def _precedents(self, cell: Cell) -> Iterator[Cell]:
         for block in self.blocks(cell):
-            for target in self.targets:
-                if block.holds(target):
-                    yield target
+            if block.is_cell:
+                if block.first in self.targets:
+                    yield block.first
+            else:
+                yield from filter(block.holds, self.targets)
             yield from self.bindings.formulas_in(block)
 
     def blocks(self, cell: Cell) -> tuple[Block, ...]:

@@ -76,6 +76,7 @@ class Record:
     question: Question
     statement: str
     label: str
+    """The words beside the cell that asked, or beside the unknown."""
     unit: str
     residual_label: str
     residual_unit: str

@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from enum import Enum
+from itertools import pairwise
 
 from xlroot.methods import opposite
 from xlroot.nature import Crossing, Nature, examine
@@ -147,7 +148,7 @@ def _signs(
     largest: float,
 ) -> list[Feature]:
     found = []
-    for (x0, y0), (x1, y1) in zip(samples, samples[1:], strict=False):
+    for (x0, y0), (x1, y1) in pairwise(samples):
         if not isinstance(y0, float) or not isinstance(y1, float) or not opposite(y0, y1):
             continue
         crossing = Crossing(x0, x1, y0, y1)

@@ -11,6 +11,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from itertools import pairwise
 from typing import NamedTuple
 
 from xlroot.methods import Family, Method, Need, Sample, Start, opposite
@@ -420,7 +421,7 @@ def _settled(steps: list[float], permitted: float, contracts: bool) -> Outcome |
     if ratio < 1.0 and step * ratio / (1.0 - ratio) <= 0.5 * permitted:
         return Outcome.SETTLED
     recent = steps[-6:]
-    growing = len(recent) == 6 and all(b >= a for a, b in zip(recent, recent[1:], strict=False))
+    growing = len(recent) == 6 and all(b >= a for a, b in pairwise(recent))
     return Outcome.DIVERGED if growing else None
 
 

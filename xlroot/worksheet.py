@@ -85,9 +85,7 @@ REFUSAL = "xlroot: "
 """How the text of a refused solve begins."""
 
 _RESIDUAL = Argument("residual", Wants.CELL, "the formula cell to be driven to zero")
-_UNKNOWN = Argument(
-    "unknown", Wants.CELL, "the input cell whose value is sought; it holds a number"
-)
+_UNKNOWN = Argument("unknown", Wants.CELL, "the input cell whose value is sought")
 _LOW = Argument("low", Wants.NUMBER, "the low end of the bracket, in the unknown's unit")
 _HIGH = Argument("high", Wants.NUMBER, "the high end of the bracket, in the unknown's unit")
 _METHOD = Argument(

@@ -21,7 +21,7 @@ from enum import Enum
 from typing import Any
 
 from xlroot.kinds import real
-from xlroot.values import Fault, Operand
+from xlroot.values import Operand
 
 
 class Takes(Enum):
@@ -163,16 +163,3 @@ def _caller() -> str:
     import sys
 
     return str(sys._getframe(2).f_globals["__name__"])
-
-
-__all__ = [
-    "Entry",
-    "Fault",
-    "Fold",
-    "Gives",
-    "Takes",
-    "Trait",
-    "by_form",
-    "entries_of",
-    "worksheet",
-]

@@ -26,7 +26,8 @@ ANDERSON_BJORCK = Method(
     Family.BRACKETING,
     Need.VALUE,
     "1.682 to 1.710",
-    "N. Anderson and A. Björck, A new high order method of regula falsi type, BIT 13 (1973) 253-264",
+    "N. Anderson and A. Björck, A new high order method of regula falsi type, BIT 13 (1973) "
+    "253-264",
     "a smooth residual; the fastest of the modified chords near the root",
     trials,
 )

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 
 from xlroot.methods.method import Family, Method, Need, Start, Trials, opposite
 
@@ -29,7 +30,7 @@ def trials(start: Start) -> Trials:
             f = fm
         first, second = sorted(((middle, fm), (x, f)))
         points = ((a, fa), first, second, (b, fb))
-        for left, right in zip(points, points[1:], strict=False):
+        for left, right in pairwise(points):
             if opposite(left[1], right[1]):
                 (a, fa), (b, fb) = left, right
                 break

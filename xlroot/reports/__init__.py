@@ -1,7 +1,7 @@
 """Reports: a record as something to read, one form a file.
 
     contents   what a record says, in words and figures, in the order in which it is read
-    numbers    how many digits a figure may show
+    figures    how many digits a figure may show
     curve      what there is to draw
     terminal   text, for the shell
     machine    JSON, for programs

@@ -12,7 +12,7 @@ from functools import cache
 _STAND_INS = {
     "±": "+/-",
     "…": "...",
-    "·": "-",
+    "·": "*",
     "–": "-",
     "—": "-",
     "−": "-",
@@ -22,7 +22,7 @@ _STAND_INS = {
     "⋅": "*",
     "°": "deg ",
     "Ω": "Ohm",
-    "Ω": "Ohm",
+    "\N{OHM SIGN}": "Ohm",
     "µ": "u",
     "μ": "u",
     "Å": "Angstrom",

@@ -6,21 +6,26 @@ digit.
 
 from __future__ import annotations
 
+import math
+from collections.abc import Sequence
+from itertools import pairwise
 from pathlib import PurePath
 from typing import NamedTuple
 
 from xlroot.record import Line, Record
-from xlroot.reports.numbers import (
+from xlroot.reports.figures import (
     INPUT_DIGITS,
     MOST_DIGITS,
+    VALUE_DIGITS,
     Figure,
     Known,
     known,
     plain,
-    scientific,
 )
+from xlroot.search import Iterate
 from xlroot.stopping import SafeSide
 from xlroot.values import Fault, Value
+from xlroot.verdict import Status
 
 Content = str | Figure
 
@@ -55,7 +60,7 @@ def content(value: Value, digits: int) -> Content:
 
 
 def sought(record: Record) -> str:
-    """The unknown's label, or its address where it has none."""
+    """What the solve is called: its label, or the unknown's address where it has none."""
     return record.label.strip() or str(record.question.unknown)
 
 
@@ -69,7 +74,13 @@ def figures(record: Record, most: int = MOST_DIGITS) -> Known | None:
     if record.root is None:
         return None
     verdict = record.verdict
-    return known(record.root, verdict.low, verdict.high, record.tolerance, most)
+    return known(record.root, verdict.low, verdict.high, _estimate(record), most)
+
+
+def _estimate(record: Record) -> float:
+    """The error of a root without an enclosure: the tolerance or, if larger, the last step."""
+    steps = (abs(after.x - before.x) for before, after in pairwise(record.iterates[-2:]))
+    return max(record.tolerance, *steps, 0.0)
 
 
 def result(record: Record, most: int = MOST_DIGITS) -> tuple[Fact, ...]:
@@ -85,7 +96,7 @@ def result(record: Record, most: int = MOST_DIGITS) -> tuple[Fact, ...]:
     else:
         facts.append(Fact("Enclosure", "none: the error is an estimate"))
     if record.residual_at_root is not None:
-        there = scientific(record.residual_at_root)
+        there = plain(record.residual_at_root, 4)
         facts.append(Fact("Residual at the root", there, record.residual_unit))
     if record.slope_at_root is not None:
         slope = plain(record.slope_at_root, 6)
@@ -101,14 +112,14 @@ def question(record: Record) -> tuple[Fact, ...]:
     asked = record.question
     facts = [
         Fact("Unknown", str(asked.unknown)),
-        Fact("", record.label.strip()),
         Fact("holds in the book", content(record.present, INPUT_DIGITS), record.unit),
         Fact("Residual", str(asked.residual)),
         Fact("", record.residual_label.strip()),
         Fact("Bracket, low end", plain(asked.low, INPUT_DIGITS), record.unit),
         Fact("Bracket, high end", plain(asked.high, INPUT_DIGITS), record.unit),
-        Fact("Tolerance", plain(record.tolerance, 6), record.unit),
     ]
+    if math.isfinite(record.tolerance):
+        facts.append(Fact("Tolerance", plain(record.tolerance, 6), record.unit))
     if asked.start is not None:
         facts.append(Fact("Start", plain(asked.start, INPUT_DIGITS), record.unit))
     if asked.safe_side is not SafeSide.NONE:
@@ -137,7 +148,7 @@ def effort(record: Record) -> tuple[Fact, ...]:
         if second.root is None or second.difference is None:
             facts.append(Fact("found", "no root"))
         else:
-            facts.append(Fact("differs by", scientific(second.difference, 2), record.unit))
+            facts.append(Fact("differs by", plain(second.difference, 2), record.unit))
     elif not record.refused:
         facts.append(Fact("Second method", NOTHING))
     return tuple(facts)
@@ -149,11 +160,38 @@ def provenance(record: Record) -> tuple[Fact, ...]:
     versions = ", ".join(f"{program} {version}" for program, version in origin.versions)
     return (
         Fact("Workbook", book_name(record)),
-        Fact("SHA-256 of the file", origin.digest or "not read from a file"),
+        Fact("SHA-256", origin.digest or "none: not read from a file"),
         Fact("Solved", f"{origin.time:%Y-%m-%d %H:%M:%S} UTC"),
         Fact("With", versions),
         Fact("Fingerprint", record.fingerprint or NOTHING),
     )
+
+
+def reason(record: Record) -> str:
+    """The verdict's reason, with the cell where it does not name it itself."""
+    verdict = record.verdict
+    if verdict.cell is None or verdict.cell in verdict.reason:
+        return verdict.reason
+    return f"{verdict.cell}: {verdict.reason}"
+
+
+def tally(records: Sequence[Record]) -> str:
+    """How many solves, and how many of each verdict."""
+    statuses = [record.verdict.status for record in records]
+    counts = [f"{statuses.count(each)} {each.value}" for each in Status if each in statuses]
+    noun = "solve" if len(records) == 1 else "solves"
+    return f"{len(records)} {noun}: {', '.join(counts)}"
+
+
+def made_with(record: Record) -> str:
+    """The program and its version."""
+    program, version = record.provenance.versions[0]
+    return f"{program} {version}"
+
+
+def day(record: Record) -> str:
+    """When the solve was run."""
+    return f"{record.provenance.time:%Y-%m-%d %H:%M} UTC"
 
 
 def book_name(record: Record) -> str:
@@ -167,13 +205,7 @@ def chain(record: Record) -> Table:
     return Table(
         "Chain",
         ("cell", "label", where, "unit", "formula"),
-        tuple(
-            (
-                *_row(line, INPUT_DIGITS if line.cell == record.question.unknown else 10),
-                line.formula,
-            )
-            for line in record.steps
-        ),
+        tuple((*_row(line, VALUE_DIGITS), line.formula) for line in record.steps),
     )
 
 
@@ -200,20 +232,20 @@ def iterates(record: Record) -> Table:
     headings += ["low", "high", "width"] if enclosed else []
     lines: list[tuple[Content, ...]] = []
     for row in rows:
-        line: list[Content] = [_count(row.n), plain(row.x, INPUT_DIGITS), _sample(row.f)]
+        line: list[Content] = [_count(row.n), plain(row.x, INPUT_DIGITS), plain(row.f, 6)]
         if sloped:
             line.append(_optional(row.slope, 6))
         if enclosed:
-            line.append(_optional(row.low, INPUT_DIGITS))
-            line.append(_optional(row.high, INPUT_DIGITS))
-            both = row.low is not None and row.high is not None
-            line.append(scientific(row.high - row.low, 3) if both else "")
+            line.extend(_bracket(row))
         lines.append(tuple(line))
     return Table("Iterates", tuple(headings), tuple(lines))
 
 
-def _sample(value: float | Fault) -> Content:
-    return scientific(value, 5) if isinstance(value, float) else str(value)
+def _bracket(row: Iterate) -> tuple[Content, ...]:
+    if row.low is None or row.high is None:
+        return "", "", ""
+    ends = plain(row.low, INPUT_DIGITS), plain(row.high, INPUT_DIGITS)
+    return (*ends, plain(row.high - row.low, 3))
 
 
 def _optional(number: float | None, digits: int) -> Content:

@@ -6,9 +6,11 @@ Plots share these so that every report shows the same picture.
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 from typing import NamedTuple
 
 from xlroot.record import Record
+from xlroot.scan import FeatureKind, Look
 
 Point = tuple[float, float]
 
@@ -38,21 +40,23 @@ class Curve(NamedTuple):
 
 
 class Narrowing(NamedTuple):
-    """A positive length by iteration, for a logarithmic axis; `title` says which length."""
+    """A positive length by iteration, for a logarithmic axis; `what` says which length."""
 
-    title: str
+    what: str
     points: tuple[tuple[int, float], ...]
 
 
 def curve(record: Record) -> Curve | None:
     """The residual over the bracket; None where it was looked at nowhere."""
     asked = record.question
-    samples = _samples(record)
+    if record.look is None:
+        return None
+    samples = _samples(record.look)
     values = [f for _, f in samples if f is not None]
     iterates = tuple(
         (row.x, row.f)
         for row in record.iterates
-        if isinstance(row.f, float) and math.isfinite(row.f) and asked.low <= row.x <= asked.high
+        if math.isfinite(row.f) and asked.low <= row.x <= asked.high
     )
     if not values:
         return None
@@ -61,7 +65,7 @@ def curve(record: Record) -> Curve | None:
     if record.root is not None:
         root = (record.root, record.residual_at_root or 0.0)
     return Curve(
-        pieces=_pieces(samples, bottom, top),
+        pieces=_pieces(samples, _breaks(record.look), bottom, top),
         iterates=tuple(point for point in iterates if bottom <= point[1] <= top),
         root=root,
         left=asked.low,
@@ -73,15 +77,17 @@ def curve(record: Record) -> Curve | None:
     )
 
 
-def _samples(record: Record) -> list[tuple[float, float | None]]:
+def _samples(look: Look) -> list[tuple[float, float | None]]:
     """Trial values in order, None where the residual has no finite value."""
-    if record.look is None:
-        return []
-    found = dict(record.look.samples)
-    return [
-        (x, f if isinstance(f, float) and math.isfinite(f) else None)
-        for x, f in sorted(found.items(), key=lambda sample: sample[0])
-    ]
+    return [(x, f if isinstance(f, float) and math.isfinite(f) else None) for x, f in look.samples]
+
+
+def _breaks(look: Look) -> list[float]:
+    """Where no line may join two trial values: poles and jumps."""
+    return [each.low for each in look.features if each.kind in _BREAKS]
+
+
+_BREAKS = (FeatureKind.POLE, FeatureKind.JUMP)
 
 
 def _limits(values: list[float]) -> tuple[float, float, bool]:
@@ -97,10 +103,14 @@ def _limits(values: list[float]) -> tuple[float, float, bool]:
 
 
 def _pieces(
-    samples: list[tuple[float, float | None]], bottom: float, top: float
+    samples: list[tuple[float, float | None]], breaks: list[float], bottom: float, top: float
 ) -> tuple[tuple[Point, ...], ...]:
     pieces: list[list[Point]] = [[]]
+    before = -math.inf
     for x, f in samples:
+        if any(before <= each < x for each in breaks):
+            pieces.append([])
+        before = x
         if f is None or not bottom <= f <= top:
             pieces.append([])
         else:
@@ -117,10 +127,10 @@ def narrowing(record: Record) -> Narrowing | None:
         if row.low is not None and row.high is not None and row.high > row.low
     }
     if len(widths) > 1:
-        return Narrowing("Bracket width by iteration", tuple(widths.items()))
+        return Narrowing("bracket width", tuple(widths.items()))
     steps = tuple(
         (after.n, abs(after.x - before.x))
-        for before, after in zip(rows, rows[1:], strict=False)
+        for before, after in pairwise(rows)
         if after.x != before.x
     )
-    return Narrowing("Step by iteration", steps) if len(steps) > 1 else None
+    return Narrowing("step", steps) if len(steps) > 1 else None

@@ -33,6 +33,10 @@ class Column(NamedTuple):
     paint: Callable[[str], str] = str
 
 
+_BREAKABLE = frozenset(",;+*/^&=<>)-_:")
+"""Signs after which a long word, such as a formula, may be broken."""
+
+
 def wrapped(text: str, columns: int) -> list[str]:
     """The text in lines of at most so many columns, broken at spaces, within a word if it must."""
     lines: list[str] = []
@@ -50,15 +54,15 @@ def wrapped(text: str, columns: int) -> list[str]:
 
 
 def _chopped(word: str, columns: int) -> Iterator[str]:
-    piece, used = "", 0
-    for character in word:
-        step = width(character)
-        if used + step > columns and piece:
-            yield piece
-            piece, used = "", 0
-        piece += character
-        used += step
-    yield piece
+    while width(word[: columns + 1]) > columns:
+        end, used = 0, 0
+        while not end or used + width(word[end]) <= columns:
+            used += width(word[end])
+            end += 1
+        at = max((n + 1 for n in range(end // 2, end) if word[n] in _BREAKABLE), default=end)
+        yield word[:at]
+        word = word[at:]
+    yield word
 
 
 def hanging(first: str, text: str, columns: int) -> list[str]:
@@ -93,15 +97,21 @@ def _widths(
         max(width(column.heading), *(width(row[at]) for row in rows), 0)
         for at, column in enumerate(columns)
     ]
-    spare = total - len(GAP) * (len(columns) - 1) - sum(natural)
-    for at, column in enumerate(columns):
-        if spare >= 0:
-            break
-        if column.least is not None and natural[at] > column.least:
-            given = min(natural[at] - column.least, -spare)
-            natural[at] -= given
-            spare += given
-    return natural if spare >= 0 else None
+    room = total - len(GAP) * (len(columns) - 1)
+    widths = [
+        wide if column.least is None else min(wide, room)
+        for wide, column in zip(natural, columns, strict=True)
+    ]
+    while sum(widths) > room:
+        yielding = [
+            at
+            for at, column in enumerate(columns)
+            if column.least is not None and widths[at] > column.least
+        ]
+        if not yielding:
+            return None
+        widths[max(yielding, key=lambda at: widths[at])] -= 1
+    return widths
 
 
 def _folded(row: Sequence[str], columns: Sequence[Column], widths: Sequence[int]) -> Iterator[str]:

@@ -10,7 +10,7 @@ from collections.abc import Iterable, Iterator
 from typing import NamedTuple
 
 from xlroot.reports.curve import Curve, Point
-from xlroot.reports.numbers import plain
+from xlroot.reports.figures import plain
 
 _BRAILLE = 0x2800
 _DOTS = ((0x01, 0x08), (0x02, 0x10), (0x04, 0x20), (0x40, 0x80))

@@ -13,15 +13,21 @@ from xlroot.reports import contents
 from xlroot.reports.characters import carries, spelled, width
 from xlroot.reports.contents import Content, Fact, Table
 from xlroot.reports.curve import curve
+from xlroot.reports.figures import Figure
 from xlroot.reports.layout import GAP, Column, Side, hanging, table, wrapped
-from xlroot.reports.numbers import Figure
 from xlroot.reports.plot import COARSE, FINE, drawn, legend
 from xlroot.verdict import Status
 
 CUSTOMARY_WIDTH = 80
 WIDEST = 120
 PLOT_ROWS = 12
-LABEL_COLUMNS = 20
+LABEL_COLUMNS = 24
+"""Where the values of facts begin."""
+
+PROVENANCE_COLUMNS = 16
+"""The same where a value is a SHA-256 hash, whose 64 digits fit a line of 80 columns then."""
+
+_NOTHING = "—"
 
 
 class Colour(Enum):
@@ -64,6 +70,8 @@ class Medium(NamedTuple):
         return f"\x1b[{code}m{text}\x1b[0m" if self.colour is Colour.ANSI and text else text
 
 
+PLAIN = Medium()
+
 _BOLD = "1"
 _FAINT = "2"
 _PAINTS = {
@@ -74,7 +82,7 @@ _PAINTS = {
 }
 
 
-def overview(records: Sequence[Record], medium: Medium = Medium()) -> str:  # noqa: B008 - frozen
+def overview(records: Sequence[Record], medium: Medium = PLAIN) -> str:
     """All solves in one table; below it what was refused, and why, and the warnings."""
     if not records:
         return "no solves\n"
@@ -82,20 +90,20 @@ def overview(records: Sequence[Record], medium: Medium = Medium()) -> str:  # no
     page.write(_headline(records))
     page.blank()
     page.extend(_register(records, page))
-    refused = [(contents.place(each), _reason(each)) for each in records if each.refused]
+    refused = [(contents.place(each), contents.reason(each)) for each in records if each.refused]
     page.notes("Refused", refused)
     warnings = [(contents.place(each), text) for each in records for text in each.warnings]
     page.notes("Warnings", warnings)
     return page.text()
 
 
-def full(record: Record, medium: Medium = Medium()) -> str:  # noqa: B008 - frozen
+def full(record: Record, medium: Medium = PLAIN) -> str:
     """The whole record."""
     page = _Page(medium)
     page.title(f"{contents.place(record)}  {contents.sought(record)}")
     page.write(record.statement)
     page.blank()
-    verdict = Fact("Verdict", f"{record.verdict.status.value}: {_reason(record)}")
+    verdict = Fact("Verdict", f"{record.verdict.status.value}: {contents.reason(record)}")
     page.facts((*contents.result(record), verdict))
     page.section("Question", contents.question(record))
     page.section("Search", contents.effort(record))
@@ -105,25 +113,13 @@ def full(record: Record, medium: Medium = Medium()) -> str:  # noqa: B008 - froz
     page.table(contents.held(record))
     page.notes("Warnings", [("", text) for text in record.warnings])
     page.notes("Cautions", [("", text) for text in record.cautions])
-    page.section("Provenance", contents.provenance(record))
+    page.section("Provenance", contents.provenance(record), PROVENANCE_COLUMNS)
     return page.text()
 
 
 def _headline(records: Sequence[Record]) -> str:
     books = dict.fromkeys(contents.book_name(each) for each in records)
-    counts = [
-        f"{sum(each.verdict.status is status for each in records)} {status.value}"
-        for status in Status
-        if any(each.verdict.status is status for each in records)
-    ]
-    noun = "solve" if len(records) == 1 else "solves"
-    return f"{', '.join(books)}: {len(records)} {noun}, {', '.join(counts)}"
-
-
-def _reason(record: Record) -> str:
-    verdict = record.verdict
-    named = verdict.cell is not None and str(verdict.cell) not in verdict.reason
-    return f"{verdict.cell}: {verdict.reason}" if named else verdict.reason
+    return f"{', '.join(books)}: {contents.tally(records)}"
 
 
 def _register(records: Sequence[Record], page: _Page) -> Iterator[str]:
@@ -153,17 +149,16 @@ def _register(records: Sequence[Record], page: _Page) -> Iterator[str]:
         yield from hanging(f"{cell}  ", label, medium.columns)
         root, bound, verdict, count = rest
         noun = "iteration" if count == "1" else "iterations"
-        told = GAP.join(part for part in (root, bound) if part)
+        told = f"{root}{GAP}{bound}{GAP}" if root != medium.say(_NOTHING) else ""
         if width(told) + 30 > medium.columns:
-            yield f"    {told}"
+            yield f"    {told.rstrip()}"
             told = ""
-        gap = f"    {told}{GAP}" if told else "    "
-        yield f"{gap}{paint(verdict)}{GAP}{count} {noun}"
+        yield f"    {told}{paint(verdict)}{GAP}{count} {noun}"
 
 
 def _register_row(record: Record) -> tuple[str, ...]:
     found = contents.figures(record)
-    root = bound = "—"
+    root = bound = _NOTHING
     if found is not None:
         root = f"{found.root.text} {record.unit}".strip()
         bound = f"±{found.bound.text}" if found.bound is not None else "estimate"
@@ -208,16 +203,16 @@ class _Page:
         self.blank()
         self.lines.append(self.medium.paint(text, _BOLD))
 
-    def facts(self, facts: Sequence[Fact]) -> None:
+    def facts(self, facts: Sequence[Fact], indent: int = LABEL_COLUMNS) -> None:
         for fact in facts:
             label = f"  {self.medium.say(fact.label)}"
             value = self.medium.say(f"{_text(fact.content)} {fact.unit}".strip())
-            first = label + " " * max(LABEL_COLUMNS + 2 - width(label), 2)
+            first = label + " " * max(indent - width(label), 2)
             self.extend(hanging(first, value, self.medium.columns))
 
-    def section(self, title: str, facts: Sequence[Fact]) -> None:
+    def section(self, title: str, facts: Sequence[Fact], indent: int = LABEL_COLUMNS) -> None:
         self.heading(title)
-        self.facts(facts)
+        self.facts(facts, indent)
 
     def notes(self, title: str, notes: Sequence[tuple[str, str]]) -> None:
         """Paragraphs under a heading, each with what it is about; nothing where there are none."""

@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from datetime import UTC, datetime
 
 from xlroot import baseline, methods, search, stopping
@@ -53,6 +53,10 @@ class Desk:
         ledger = Ledger(bindings)
         return cls(bindings, ledger, ledger)
 
+    @property
+    def book(self) -> Book:
+        return self.bindings.book
+
 
 @dataclass(frozen=True, slots=True)
 class Prepared:
@@ -61,10 +65,6 @@ class Prepared:
     program: Program
     warnings: tuple[str, ...]
     refusal: Unsupported | None
-
-    @property
-    def book(self) -> Book:
-        return self.bindings.book
 
 
 def ask(book: Book, question: Question) -> None:
@@ -187,6 +187,11 @@ def refused_record(
     return _record(desk, question, cell, prepared, verdict, None)
 
 
+def relabelled(record: Record, book: Book, cell: Cell) -> Record:
+    """The record under another cell that asks the same question."""
+    return replace(record, cell=cell, label=label_of(book, cell))
+
+
 def tolerance_of(question: Question) -> float:
     """The tolerance stated, or the customary one."""
     if question.tolerance is not None:
@@ -211,7 +216,6 @@ def _record(
     at: Value = root if root is not None else None if isinstance(present, Unsaved) else present
     values = _values(program, at)
     f_root = values.get(residual)
-    label = label_of(book, unknown)
     method = run.method.name if run is not None else question.method
     if run is not None:
         note = "; ".join(each for each in (note, *run.notes) if each)
@@ -219,7 +223,7 @@ def _record(
         cell=cell,
         question=question,
         statement=_statement(book, question),
-        label=label,
+        label=label_of(book, cell or unknown),
         unit=unit_of(book, unknown),
         residual_label=label_of(book, residual),
         residual_unit=unit_of(book, residual),
@@ -321,9 +325,9 @@ def _held(book: Book, program: Program) -> Iterator[Line]:
 
 def _warned(prepared: Prepared | None, run: Run | None, question: Question) -> tuple[str, ...]:
     warnings = list(prepared.warnings) if prepared is not None else []
-    if run is not None and run.root is not None and question.safe_side is not SafeSide.NONE:
-        if run.enclosure is None:
-            warnings.append("No sign change was found, so the safe side could not be chosen.")
+    unchosen = run is not None and run.root is not None and run.enclosure is None
+    if unchosen and question.safe_side is not SafeSide.NONE:
+        warnings.append("No sign change was found, so the safe side could not be chosen.")
     return tuple(warnings)
 
 

@@ -7,7 +7,6 @@ covers the root as it is written. All rounding is decimal and exact.
 
 from __future__ import annotations
 
-import math
 from decimal import ROUND_CEILING, ROUND_FLOOR, ROUND_HALF_EVEN, Context, Decimal
 from typing import NamedTuple
 
@@ -54,15 +53,16 @@ class Known(NamedTuple):
 
 
 def known(
-    root: float, low: float | None, high: float | None, tolerance: float, most: int = MOST_DIGITS
+    root: float, low: float | None, high: float | None, error: float, most: int = MOST_DIGITS
 ) -> Known:
-    """The figures of a root; without an enclosure, the tolerance decides on the digits.
+    """The figures of a root; without an enclosure, the estimated error decides on the digits, and
+    none is added.
 
     No figure has more than `most` significant digits. Where the ends of the enclosure need more
     than that to be told apart, they are written further apart than they are, never closer.
     """
     if low is None or high is None:
-        return Known(_to_place(root, _place(Decimal(tolerance)), most), None, None, None)
+        return Known(_to_place(root, _place(Decimal(repr(error))) + 1, most), None, None, None)
     exact, bottom, top = Decimal(root), Decimal(low), Decimal(high)
     spread = max(_EXACT.subtract(top, exact), _EXACT.subtract(exact, bottom))
     if spread <= 0:
@@ -146,8 +146,3 @@ def number_format(text: str) -> str:
     decimals = len(mantissa.partition(".")[2])
     form = "0" + ("." + "0" * decimals if decimals else "")
     return form + "E+00" if mark else form
-
-
-def finite(number: float | None) -> float | None:
-    """The number, or None where it is missing, infinite or not a number."""
-    return number if number is not None and math.isfinite(number) else None

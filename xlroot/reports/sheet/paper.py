@@ -1,0 +1,225 @@
+"""A sheet that is filled from top to bottom and printed on A4: rows, heights, page breaks.
+
+Heights are worked out from the text, since a spreadsheet does not fit them to merged cells.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import TYPE_CHECKING, NamedTuple
+
+from xlroot.reports.contents import Content
+from xlroot.reports.figures import Figure, number_format
+from xlroot.reports.layout import wrapped
+from xlroot.reports.sheet import ink
+from xlroot.reports.sheet.ink import Letter
+from xlroot.reports.sheet.names import printable, stored, unit_suffix
+
+if TYPE_CHECKING:
+    from openpyxl.cell import Cell
+    from openpyxl.worksheet.worksheet import Worksheet
+
+A4 = 9
+"""The code of the paper (ECMA-376 part 1, section 18.3.1.63)."""
+
+PAGE_HEIGHT = 715.0
+"""Points of a page that rows may fill: A4 less the margins, and a little for rounding."""
+
+LINE = 1.32
+"""Height of a line of text over its size."""
+
+PIXELS = 7.0
+"""Width of a digit in the normal style, which column widths count in (Arial 10 at 96 dpi)."""
+
+SIDES, TOP, BOTTOM = 0.6, 0.75, 0.75
+"""Margins in inches."""
+
+
+class Span(NamedTuple):
+    """A run of columns, both ends included, counted from 1."""
+
+    first: int
+    last: int
+
+
+class Paper:
+    """The sheet being filled; `row` is the next free one."""
+
+    def __init__(self, sheet: Worksheet, widths: Sequence[float]) -> None:
+        self.sheet = sheet
+        self.widths = widths
+        self.row = 1
+        self.used = 0.0
+        self.head = 0.0
+        """Height of the rows that are repeated on every page."""
+        for column, width in enumerate(widths, 1):
+            sheet.column_dimensions[_letter(column)].width = width
+        sheet.sheet_view.showGridLines = False
+        sheet.sheet_view.zoomScale = 110
+
+    @property
+    def whole(self) -> Span:
+        return Span(1, len(self.widths))
+
+    # -- writing -------------------------------------------------------------------------------
+
+    def put(
+        self,
+        column: int,
+        content: Content,
+        letter: Letter = ink.PLAIN,
+        *,
+        side: str = "left",
+        unit: str = "",
+        row: int | None = None,
+    ) -> Cell:
+        """Writes a figure as a number and a text as a text that no spreadsheet takes for more."""
+        cell = self.sheet.cell(self.row if row is None else row, column)
+        if isinstance(content, Figure) and math.isfinite(content.value):
+            cell.value = content.value
+            cell.number_format = number_format(content.text) + unit_suffix(unit)
+        else:
+            text = content.text if isinstance(content, Figure) else content
+            cell.value = stored(printable(text)) or None
+            cell.data_type = "s" if cell.value is not None else "n"
+            cell.quotePrefix = text[:1] in ("=", "+", "-", "@", "'", "\t", "\r")
+        cell.font = ink.font(letter)
+        cell.alignment = ink.aligned(side)
+        return cell
+
+    def paragraph(
+        self, span: Span, text: str, letter: Letter = ink.PLAIN, *, row: int | None = None
+    ) -> float:
+        """Writes a text over several columns in as many lines as it needs; gives its height."""
+        at = self.row if row is None else row
+        cell = self.put(span.first, text, letter, row=at)
+        cell.alignment = ink.aligned("left", wrap=True)
+        self.merge(span, at, at)
+        return self.height_of(text, span, letter)
+
+    def merge(self, span: Span, top: int, bottom: int) -> None:
+        if span.first < span.last or top < bottom:
+            self.sheet.merge_cells(
+                start_row=top, end_row=bottom, start_column=span.first, end_column=span.last
+            )
+
+    # -- rows ----------------------------------------------------------------------------------
+
+    def end_row(self, height: float) -> None:
+        """Gives the current row its height and goes on to the next."""
+        self.sheet.row_dimensions[self.row].height = round(max(height, 3.0) * 4) / 4
+        self.used += height
+        self.row += 1
+
+    def gap(self, height: float = 6.0) -> None:
+        self.end_row(height)
+
+    def heading(self, text: str, span: Span | None = None) -> None:
+        """A heading with a thin rule below; the row stays open."""
+        span = span or self.whole
+        self.put(span.first, text.upper(), ink.HEADING)
+        self.rule(span)
+
+    def rule(self, span: Span, *, colour: str = ink.RULE, row: int | None = None) -> None:
+        """A thin line below a row."""
+        for column in range(span.first, span.last + 1):
+            cell = self.sheet.cell(self.row if row is None else row, column)
+            cell.border = ink.ruled(below="thin", colour=colour)
+
+    def tint(self, top: int, bottom: int, span: Span) -> None:
+        for row in range(top, bottom + 1):
+            for column in range(span.first, span.last + 1):
+                self.sheet.cell(row, column).fill = ink.filled(ink.TINT)
+
+    def keep(self, height: float) -> bool:
+        """Goes to a new page unless so much still fits on this one; whether it did."""
+        if self.used + height <= PAGE_HEIGHT:
+            return False
+        self.new_page()
+        return True
+
+    def new_page(self) -> None:
+        from openpyxl.worksheet.pagebreak import Break
+
+        self.sheet.row_breaks.append(Break(id=self.row - 1))
+        self.used = self.head
+
+    # -- measures ------------------------------------------------------------------------------
+
+    def points(self, span: Span) -> float:
+        """The width of a span of columns in points."""
+        pixels = sum(self.widths[n - 1] * PIXELS + 5.0 for n in range(span.first, span.last + 1))
+        return pixels * 0.75
+
+    def height_of(self, text: str, span: Span, letter: Letter) -> float:
+        """The height that a text needs in a span."""
+        room = self.points(span) - 6.0
+        lines = len(_lines(printable(text), room, letter))
+        return lines * letter.size * LINE + 2.0
+
+    # -- printing ------------------------------------------------------------------------------
+
+    def set_up(self, last_row: int, repeated: int, *, left: str, right: str, footer: str) -> None:
+        """A4 upright, one page wide, with header, footer, and the first rows on every page."""
+        from openpyxl.worksheet.properties import PageSetupProperties
+
+        sheet = self.sheet
+        sheet.print_area = f"A1:{_letter(len(self.widths))}{last_row}"
+        sheet.print_title_rows = f"1:{repeated}"
+        sheet.page_setup.paperSize = A4
+        sheet.page_setup.orientation = "portrait"
+        sheet.page_setup.fitToWidth = 1
+        sheet.page_setup.fitToHeight = 0
+        sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
+        sheet.print_options.horizontalCentered = True
+        margins = sheet.page_margins
+        margins.left = margins.right = SIDES
+        margins.top, margins.bottom = TOP, BOTTOM
+        margins.header = margins.footer = 0.35
+        parts = (
+            (sheet.oddHeader.left, _header(left)),
+            (sheet.oddHeader.right, _header(right)),
+            (sheet.oddFooter.left, _header(footer)),
+            (sheet.oddFooter.right, "page &P of &N"),
+        )
+        for part, text in parts:
+            part.text = text
+            part.size = 8
+            part.font = f"{ink.FAMILY},Regular"
+            part.color = ink.GREY
+
+
+LONGEST_HEADER = 80
+
+
+def _header(text: str) -> str:
+    """A text in a header, where & begins a code and [ a name for one."""
+    shown = printable(text)
+    if len(shown) > LONGEST_HEADER:
+        shown = "…" + shown[-LONGEST_HEADER:]
+    return shown.replace("&", "&&").replace("&[", "& [")
+
+
+def _letter(column: int) -> str:
+    from openpyxl.utils import get_column_letter
+
+    return get_column_letter(column)
+
+
+def _lines(text: str, room: float, letter: Letter) -> list[str]:
+    """Lines of at most so many points; letters are taken as wide as their average."""
+    ems = sum(map(_em, text)) or 1.0
+    average = ems / max(len(text), 1) * letter.size
+    if letter.weight == "bold":
+        average *= 1.08
+    return wrapped(text, max(int(room / (average * 1.04)), 4))
+
+
+def _em(character: str) -> float:
+    """About how wide a character is in Arial, over the size (from the font's own metrics)."""
+    if character in " .,;:!|'ijlIft()[]/\\-":
+        return 0.31
+    if character.isupper() or character in "mw%@<>=+~±":
+        return 0.68
+    return 0.56 if ord(character) < 0x2E80 else 1.0
