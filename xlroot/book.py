@@ -7,7 +7,7 @@ format. Sheet, name and table lookups ignore case, as spreadsheets do.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterable, Iterator, Mapping
 from dataclasses import dataclass, field
 from enum import Enum
 from typing import Protocol
@@ -84,6 +84,10 @@ class Sheet(Protocol):
 
     def mentions(self, text: str) -> bool:
         """Whether a formula may contain the text, ignoring case; cheap, may be wrongly true."""
+        ...
+
+    def mentioning(self, text: str) -> Iterable[tuple[int, int]]:
+        """Cells whose formula contains the text, ignoring case, and perhaps others."""
         ...
 
 
@@ -204,6 +208,7 @@ class Book:
         wanted = text.casefold()
         for name, sheet in self.sheet_by_name.items():
             if sheet.mentions(text):
-                for (row, column), formula in sorted(sheet.formulas.items()):
-                    if wanted in formula.text.casefold():
+                for row, column in sorted(sheet.mentioning(text)):
+                    formula = sheet.formulas.get((row, column))
+                    if formula is not None and wanted in formula.text.casefold():
                         yield Cell(name, row, column), formula

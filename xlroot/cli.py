@@ -147,9 +147,7 @@ def scan(
         print(f"suggested bracket: {low:.12g} to {high:.12g}")
 
 
-def finish(
-    records: tuple[Record, ...], out: Path | None, *, json: bool, full: bool
-) -> None:
+def finish(records: tuple[Record, ...], out: Path | None, *, json: bool, full: bool) -> None:
     """Prints and writes the records, and leaves with the exit code that they deserve."""
     if out is not None:
         from xlroot.reports.sheet import write_records

@@ -189,7 +189,11 @@ def refused_record(
 
 def relabelled(record: Record, book: Book, cell: Cell) -> Record:
     """The record under another cell that asks the same question."""
-    return replace(record, cell=cell, label=label_of(book, cell))
+    return replace(record, cell=cell, label=_own_label(book, cell, record.question.unknown))
+
+
+def _own_label(book: Book, cell: Cell | None, unknown: Cell) -> str:
+    return (label_of(book, cell) if cell is not None else "") or label_of(book, unknown)
 
 
 def tolerance_of(question: Question) -> float:
@@ -223,7 +227,7 @@ def _record(
         cell=cell,
         question=question,
         statement=_statement(book, question),
-        label=label_of(book, cell or unknown),
+        label=_own_label(book, cell, unknown),
         unit=unit_of(book, unknown),
         residual_label=label_of(book, residual),
         residual_unit=unit_of(book, residual),

@@ -28,6 +28,13 @@ class Fault(Enum):
     NA = "#N/A"
     SPILL = "#SPILL!"
     CALC = "#CALC!"
+    FIELD = "#FIELD!"
+    BLOCKED = "#BLOCKED!"
+    CONNECT = "#CONNECT!"
+    BUSY = "#BUSY!"
+    WAITING = "#GETTING_DATA"
+    EXTERNAL = "#EXTERNAL!"
+    UNKNOWN = "#UNKNOWN!"
 
     def __str__(self) -> str:
         return str(self.value)

@@ -27,8 +27,13 @@ class MemorySheet:
         return max(rows), max(columns)
 
     def mentions(self, text: str) -> bool:
+        return bool(self.mentioning(text))
+
+    def mentioning(self, text: str) -> tuple[tuple[int, int], ...]:
         wanted = text.casefold()
-        return any(wanted in formula.text.casefold() for formula in self.formulas.values())
+        return tuple(
+            place for place, formula in self.formulas.items() if wanted in formula.text.casefold()
+        )
 
 
 def book_of(

@@ -59,6 +59,11 @@ def content(value: Value, digits: int) -> Content:
     return plain(value, digits)
 
 
+def text_of(content: Content) -> str:
+    """The content as text."""
+    return content.text if isinstance(content, Figure) else content
+
+
 def sought(record: Record) -> str:
     """What the solve is called: its label, or the unknown's address where it has none."""
     return record.label.strip() or str(record.question.unknown)

@@ -11,7 +11,7 @@ from typing import NamedTuple, TextIO
 from xlroot.record import Record
 from xlroot.reports import contents
 from xlroot.reports.characters import carries, spelled, width
-from xlroot.reports.contents import Content, Fact, Table
+from xlroot.reports.contents import Content, Fact, Table, text_of
 from xlroot.reports.curve import curve
 from xlroot.reports.figures import Figure
 from xlroot.reports.layout import GAP, Column, Side, hanging, table, wrapped
@@ -206,7 +206,7 @@ class _Page:
     def facts(self, facts: Sequence[Fact], indent: int = LABEL_COLUMNS) -> None:
         for fact in facts:
             label = f"  {self.medium.say(fact.label)}"
-            value = self.medium.say(f"{_text(fact.content)} {fact.unit}".strip())
+            value = self.medium.say(f"{text_of(fact.content)} {fact.unit}".strip())
             first = label + " " * max(indent - width(label), 2)
             self.extend(hanging(first, value, self.medium.columns))
 
@@ -241,7 +241,7 @@ class _Page:
         if not content.rows:
             return
         self.heading(content.title)
-        rows = [tuple(self.medium.say(_text(each)) for each in row) for row in content.rows]
+        rows = [tuple(self.medium.say(text_of(each)) for each in row) for row in content.rows]
         for keep in _choices(content.headings):
             columns = [
                 _column(content.headings[at], [row[at] for row in content.rows]) for at in keep
@@ -278,7 +278,3 @@ _FLEXIBLE: dict[str, int] = {"label": 10, "formula": 16}
 def _column(heading: str, cells: Sequence[Content]) -> Column:
     numeric = any(isinstance(each, Figure) for each in cells) and heading != "x"
     return Column(heading, Side.RIGHT if numeric else Side.LEFT, _FLEXIBLE.get(heading))
-
-
-def _text(content: Content) -> str:
-    return content.text if isinstance(content, Figure) else content

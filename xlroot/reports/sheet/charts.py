@@ -61,7 +61,7 @@ class Charts:
         chart.series.append(line)
         if curve.iterates:
             dots = self._series("iterates", curve.iterates)
-            _dots(dots, "circle", 5, "FFFFFF", ink.GREY)
+            _dots(dots, "circle", 5, ink.IRON, ink.IRON)
             chart.series.append(dots)
         if curve.root is not None:
             root = self._series("root", ((curve.root[0], 0.0),))

@@ -5,6 +5,7 @@ Sizes are in points, colours in RGB. The styles are made on first use and shared
 
 from __future__ import annotations
 
+from enum import Enum
 from functools import cache
 from typing import TYPE_CHECKING, NamedTuple
 
@@ -20,6 +21,7 @@ TEXT, SMALL, FINE, TITLE, ROOT = 9.0, 8.0, 7.5, 14.0, 15.0
 ACCENT = "1D5A62"
 BLACK = "1A1A1A"
 GREY = "5F6A6D"
+IRON = "7C898C"
 RULE = "AAB4B6"
 TINT = "EDF2F2"
 WARN = "9A5B00"
@@ -49,6 +51,14 @@ COLUMN = Letter(SMALL, GREY, "bold")
 CELL = Letter(SMALL, BLACK)
 
 
+class Fit(Enum):
+    """What becomes of content that is wider than its cell."""
+
+    OVER = "it runs over empty cells beside it"
+    WRAP = "it takes more lines"
+    SHRINK = "it is written smaller: a row of # signs would hide a number"
+
+
 @cache
 def font(letter: Letter) -> Font:
     from openpyxl.styles import Font
@@ -64,11 +74,17 @@ def link_font() -> Font:
 
 
 @cache
-def aligned(side: str, *, wrap: bool = False, down: str = "top") -> Alignment:
-    """Numbers that do not fit are shrunk: a row of # signs would hide a result."""
+def aligned(side: str, fit: Fit = Fit.OVER, *, down: str = "top", indent: int = 0) -> Alignment:
+    """Where a text or a number stands in its cell, and what happens if it does not fit."""
     from openpyxl.styles import Alignment
 
-    return Alignment(horizontal=side, vertical=down, wrap_text=wrap, shrink_to_fit=not wrap or None)
+    return Alignment(
+        horizontal=side,
+        vertical=down,
+        indent=indent,
+        wrap_text=True if fit is Fit.WRAP else None,
+        shrink_to_fit=True if fit is Fit.SHRINK else None,
+    )
 
 
 @cache
@@ -92,4 +108,4 @@ def default_font(book: Workbook) -> None:
     """Gives the workbook's normal style our letters, which the widths of columns count in."""
     from openpyxl.styles import Font
 
-    book._named_styles["Normal"].font = Font(name=FAMILY, size=10, family=2)  # type: ignore[attr-defined]
+    book._named_styles["Normal"].font = Font(name=FAMILY, size=10, family=2)

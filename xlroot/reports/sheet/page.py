@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from xlroot.record import Record
 from xlroot.reports import contents
-from xlroot.reports.contents import Content, Fact
+from xlroot.reports.contents import Fact, text_of
 from xlroot.reports.curve import curve, narrowing
 from xlroot.reports.figures import SHEET_DIGITS, Figure
 from xlroot.reports.sheet import ink
@@ -20,7 +20,7 @@ from xlroot.reports.sheet.tables import write_cells, write_iterates
 if TYPE_CHECKING:
     from openpyxl.worksheet.worksheet import Worksheet
 
-WIDTHS = (13.0, 21.0, 17.0, 9.0, 16.0, 16.0)
+WIDTHS = (15.0, 20.0, 16.5, 9.5, 15.5, 15.5)
 LEFT, RIGHT = Span(1, 4), Span(5, 6)
 _LABEL, _VALUE, _UNIT, _SECOND, _LAST = 1, 3, 4, 5, 6
 
@@ -40,6 +40,8 @@ def write_page(sheet: Worksheet, record: Record, count: str) -> None:
     _paragraphs(paper, "Cautions", record.cautions, Letter(ink.FINE, ink.GREY))
     _provenance(paper, record)
     _signatures(paper)
+    if record.steps or record.iterates:
+        paper.new_page()
     write_cells(paper, contents.chain(record), record.steps)
     write_cells(paper, contents.held(record), record.held)
     write_iterates(paper, contents.iterates(record))
@@ -96,7 +98,7 @@ def _result(paper: Paper, record: Record) -> None:
         if isinstance(fact.content, Figure):
             column = 2 if n == 0 else _VALUE
             paper.put(column, fact.content, letter, side="right")
-            paper.put(_UNIT, fact.unit, ink.LABEL)
+            paper.put(_UNIT, fact.unit, ink.LABEL, indent=1)
             if n == 0:
                 paper.merge(Span(2, _VALUE), paper.row, paper.row)
         else:
@@ -181,19 +183,15 @@ def _paragraphs(paper: Paper, title: str, texts: Sequence[str], letter: Letter) 
 
 def _provenance(paper: Paper, record: Record) -> None:
     facts = contents.provenance(record)
-    heights = [max(paper.height_of(_text(f.content), Span(2, 6), ink.CELL), 11.5) for f in facts]
+    heights = [max(paper.height_of(text_of(f.content), Span(2, 6), ink.CELL), 11.5) for f in facts]
     paper.keep(13.0 + sum(heights))
     paper.heading("Provenance")
     paper.end_row(13.0)
     for fact, height in zip(facts, heights, strict=True):
         paper.put(1, fact.label, ink.FAINT)
-        paper.paragraph(Span(2, 6), _text(fact.content), ink.CELL)
+        paper.paragraph(Span(2, 6), text_of(fact.content), ink.CELL)
         paper.end_row(height)
     paper.gap(4.0)
-
-
-def _text(content: Content) -> str:
-    return content.text if isinstance(content, Figure) else content
 
 
 def _signatures(paper: Paper) -> None:

@@ -9,11 +9,13 @@ import math
 from collections.abc import Sequence
 from typing import TYPE_CHECKING, NamedTuple
 
+from xlroot.cells import column_name
+from xlroot.reports import contents
 from xlroot.reports.contents import Content
 from xlroot.reports.figures import Figure, number_format
 from xlroot.reports.layout import wrapped
 from xlroot.reports.sheet import ink
-from xlroot.reports.sheet.ink import Letter
+from xlroot.reports.sheet.ink import Fit, Letter
 from xlroot.reports.sheet.names import printable, stored, unit_suffix
 
 if TYPE_CHECKING:
@@ -54,7 +56,7 @@ class Paper:
         self.head = 0.0
         """Height of the rows that are repeated on every page."""
         for column, width in enumerate(widths, 1):
-            sheet.column_dimensions[_letter(column)].width = width
+            sheet.column_dimensions[column_name(column)].width = width
         sheet.sheet_view.showGridLines = False
         sheet.sheet_view.zoomScale = 110
 
@@ -72,6 +74,7 @@ class Paper:
         *,
         side: str = "left",
         unit: str = "",
+        indent: int = 0,
         row: int | None = None,
     ) -> Cell:
         """Writes a figure as a number and a text as a text that no spreadsheet takes for more."""
@@ -79,22 +82,29 @@ class Paper:
         if isinstance(content, Figure) and math.isfinite(content.value):
             cell.value = content.value
             cell.number_format = number_format(content.text) + unit_suffix(unit)
+            fit = Fit.SHRINK
         else:
-            text = content.text if isinstance(content, Figure) else content
+            text, fit = contents.text_of(content), Fit.OVER
             cell.value = stored(printable(text)) or None
             cell.data_type = "s" if cell.value is not None else "n"
             cell.quotePrefix = text[:1] in ("=", "+", "-", "@", "'", "\t", "\r")
         cell.font = ink.font(letter)
-        cell.alignment = ink.aligned(side)
+        cell.alignment = ink.aligned(side, fit, indent=indent)
         return cell
 
     def paragraph(
-        self, span: Span, text: str, letter: Letter = ink.PLAIN, *, row: int | None = None
+        self,
+        span: Span,
+        text: str,
+        letter: Letter = ink.PLAIN,
+        *,
+        indent: int = 0,
+        row: int | None = None,
     ) -> float:
         """Writes a text over several columns in as many lines as it needs; gives its height."""
         at = self.row if row is None else row
         cell = self.put(span.first, text, letter, row=at)
-        cell.alignment = ink.aligned("left", wrap=True)
+        cell.alignment = ink.aligned("left", Fit.WRAP, indent=indent)
         self.merge(span, at, at)
         return self.height_of(text, span, letter)
 
@@ -144,6 +154,7 @@ class Paper:
 
         self.sheet.row_breaks.append(Break(id=self.row - 1))
         self.used = self.head
+        self.gap(4.0)
 
     # -- measures ------------------------------------------------------------------------------
 
@@ -165,7 +176,7 @@ class Paper:
         from openpyxl.worksheet.properties import PageSetupProperties
 
         sheet = self.sheet
-        sheet.print_area = f"A1:{_letter(len(self.widths))}{last_row}"
+        sheet.print_area = f"A1:{column_name(len(self.widths))}{last_row}"
         sheet.print_title_rows = f"1:{repeated}"
         sheet.page_setup.paperSize = A4
         sheet.page_setup.orientation = "portrait"
@@ -199,12 +210,6 @@ def _header(text: str) -> str:
     if len(shown) > LONGEST_HEADER:
         shown = "…" + shown[-LONGEST_HEADER:]
     return shown.replace("&", "&&").replace("&[", "& [")
-
-
-def _letter(column: int) -> str:
-    from openpyxl.utils import get_column_letter
-
-    return get_column_letter(column)
 
 
 def _lines(text: str, room: float, letter: Letter) -> list[str]:

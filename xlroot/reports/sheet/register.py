@@ -18,7 +18,7 @@ if TYPE_CHECKING:
 
 REGISTER = "Register"
 
-WIDTHS = (5.0, 20.0, 23.0, 18.0, 8.0, 9.0, 10.0)
+WIDTHS = (5.0, 20.0, 22.0, 17.5, 8.5, 8.5, 11.0)
 _HEADINGS = ("no.", "cell", "sought", "root", "unit", "± bound", "verdict")
 _NO, _CELL, _SOUGHT, _ROOT, _UNIT, _BOUND, _VERDICT = range(1, 8)
 
@@ -35,7 +35,8 @@ def write_register(sheet: Worksheet, records: Sequence[Record], pages: Sequence[
     paper.end_row(paper.paragraph(paper.whole, contents.tally(records), ink.LABEL))
     paper.gap()
     for column, text in enumerate(_HEADINGS, 1):
-        paper.put(column, text, ink.COLUMN, side=_side(column))
+        indent = 1 if column in (_UNIT, _VERDICT) else 0
+        paper.put(column, text, ink.COLUMN, side=_side(column), indent=indent)
     paper.rule(paper.whole, colour=ink.ACCENT)
     paper.end_row(13.0)
     head = paper.row - 1
@@ -60,13 +61,14 @@ def _line(paper: Paper, number: int, record: Record, page: str) -> None:
     found = contents.figures(record, SHEET_DIGITS)
     if found is not None:
         paper.put(_ROOT, found.root, ink.CELL, side="right")
-        paper.put(_UNIT, record.unit, ink.CELL)
+        paper.put(_UNIT, record.unit, ink.CELL, indent=1)
         if found.bound is not None:
             paper.put(_BOUND, found.bound, ink.CELL, side="right")
         else:
             paper.put(_BOUND, "estimate", ink.CELL, side="right")
     status = record.verdict.status
-    paper.put(_VERDICT, status.value, Letter(ink.SMALL, ink.STATUS_COLOURS[status], "bold"))
+    letter = Letter(ink.SMALL, ink.STATUS_COLOURS[status], "bold")
+    paper.put(_VERDICT, status.value, letter, indent=1)
     paper.rule(paper.whole)
     paper.end_row(max(*heights, 13.0))
 

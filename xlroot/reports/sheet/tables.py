@@ -5,8 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from xlroot.record import Line
-from xlroot.reports.contents import Content, Table
-from xlroot.reports.figures import Figure
+from xlroot.reports.contents import Table, text_of
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.ink import Letter
 from xlroot.reports.sheet.paper import Paper, Span
@@ -25,9 +24,9 @@ def write_cells(paper: Paper, table: Table, lines: Sequence[Line]) -> None:
     sheet = None
     for line, (_, label, value, unit, formula) in zip(lines, table.rows, strict=True):
         height = max(
-            paper.height_of(_text(label), Span(2, 2), ink.CELL),
-            paper.height_of(_text(formula), _FORMULA, ink.CELL) if formula else 0.0,
-            paper.height_of(_text(unit), Span(4, 4), ink.CELL) if unit else 0.0,
+            paper.height_of(text_of(label), Span(2, 2), ink.CELL),
+            paper.height_of(text_of(formula), _FORMULA, ink.CELL) if formula else 0.0,
+            paper.height_of(text_of(unit), Span(4, 4), ink.CELL) if unit else 0.0,
             ROW,
         )
         fresh = line.cell.sheet != sheet
@@ -37,10 +36,10 @@ def write_cells(paper: Paper, table: Table, lines: Sequence[Line]) -> None:
             paper.paragraph(paper.whole, f"sheet {sheet}", _SHEET)
             paper.end_row(HEADING)
         paper.put(1, line.cell.address, ink.CELL)
-        paper.paragraph(Span(2, 2), _text(label), ink.CELL)
+        paper.paragraph(Span(2, 2), text_of(label), ink.CELL)
         paper.put(3, value, ink.CELL, side="right")
-        paper.paragraph(Span(4, 4), _text(unit), ink.CELL)
-        paper.paragraph(_FORMULA, _text(formula), ink.CELL)
+        paper.paragraph(Span(4, 4), text_of(unit), ink.CELL, indent=1)
+        paper.paragraph(_FORMULA, text_of(formula), ink.CELL)
         paper.end_row(height)
     paper.rule(paper.whole, row=paper.row - 1)
     paper.gap(10.0)
@@ -69,7 +68,9 @@ _Columns = Sequence[tuple[int, str, str]]
 
 def _columns(table: Table) -> _Columns:
     sides = ("left", "left", "right", "left", "left")
-    return [(n, text, side) for n, (text, side) in enumerate(zip(table.headings, sides), 1)]
+    return [
+        (n, text, side) for n, (text, side) in enumerate(zip(table.headings, sides, strict=True), 1)
+    ]
 
 
 def _begin(paper: Paper, table: Table, columns: _Columns) -> None:
@@ -81,7 +82,7 @@ def _begin(paper: Paper, table: Table, columns: _Columns) -> None:
 
 def _headings(paper: Paper, columns: _Columns) -> None:
     for column, text, side in columns:
-        paper.put(column, text, ink.COLUMN, side=side)
+        paper.put(column, text, ink.COLUMN, side=side, indent=1 if text == "unit" else 0)
     paper.rule(paper.whole)
     paper.end_row(HEADING)
 
@@ -94,7 +95,3 @@ def _room(paper: Paper, table: Table, height: float, columns: _Columns | None = 
     paper.end_row(HEADING)
     _headings(paper, columns or _columns(table))
     return True
-
-
-def _text(content: Content) -> str:
-    return content.text if isinstance(content, Figure) else content
