@@ -118,7 +118,7 @@ class Program:
 
     def exact(self, x: float) -> float | Fault:
         """The residual at x by the interpreter."""
-        value = self.values_at(x)[self.chain.residual]
+        value = self.values_at(float(x))[self.chain.residual]
         return Fault.VALUE if isinstance(value, str) else to_number(value)
 
     def fault_at(self, x: float) -> tuple[Cell, Fault] | None:

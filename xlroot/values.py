@@ -8,40 +8,12 @@ empty text, TRUE as 1, a text that looks like a number as that number, anything 
 
 from __future__ import annotations
 
-import math
 from collections.abc import Iterator
-from enum import Enum
 from typing import NamedTuple
 
 from xlroot.cells import Block
-
-
-class Fault(Enum):
-    """An error value that a formula can give; `str` is the text a cell shows."""
-
-    NULL = "#NULL!"
-    DIV0 = "#DIV/0!"
-    VALUE = "#VALUE!"
-    REF = "#REF!"
-    NAME = "#NAME?"
-    NUM = "#NUM!"
-    NA = "#N/A"
-    SPILL = "#SPILL!"
-    CALC = "#CALC!"
-    FIELD = "#FIELD!"
-    BLOCKED = "#BLOCKED!"
-    CONNECT = "#CONNECT!"
-    BUSY = "#BUSY!"
-    WAITING = "#GETTING_DATA"
-    EXTERNAL = "#EXTERNAL!"
-    UNKNOWN = "#UNKNOWN!"
-
-    def __str__(self) -> str:
-        return str(self.value)
-
-
-FAULTS: dict[str, Fault] = {fault.value: fault for fault in Fault}
-"""Faults by the text that a cell shows."""
+from xlroot.faults import FAULTS, Fault
+from xlroot.texts import general_format, read_number
 
 Value = float | str | bool | None | Fault
 
@@ -73,20 +45,6 @@ class Grid(NamedTuple):
 Operand = Value | Grid
 
 
-def read_number(text: str) -> float | Fault:
-    """The number that a text reads as, or #VALUE!: decimal, exponent, percent, date or time."""
-    stripped = text.strip()
-    try:
-        number = float(stripped)
-    except ValueError:
-        from xlroot.texts import read_special_number
-
-        return read_special_number(stripped)
-    if not math.isfinite(number) or "_" in stripped:
-        return Fault.VALUE
-    return number
-
-
 def to_number(value: Value) -> float | Fault:
     """The value as a number; blank is 0, TRUE is 1, text is read, a fault stays."""
     if type(value) is float:
@@ -110,8 +68,6 @@ def to_text(value: Value) -> str | Fault:
         return "TRUE" if value else "FALSE"
     if isinstance(value, Fault):
         return value
-    from xlroot.texts import general_format
-
     return general_format(value)
 
 
@@ -130,3 +86,16 @@ def to_logical(value: Value) -> bool | Fault:
             return True
         return False if upper == "FALSE" else Fault.VALUE
     return value != 0.0
+
+
+__all__ = [
+    "FAULTS",
+    "Fault",
+    "Grid",
+    "Operand",
+    "Value",
+    "read_number",
+    "to_logical",
+    "to_number",
+    "to_text",
+]

@@ -119,5 +119,3 @@ def _runs(case: Case) -> bool:
         return not unknown_functions(case)
     except Unsupported:
         return False
-
-

@@ -21,7 +21,6 @@ CASES: list[dict[str, Any]] = json.loads(
 )["checks"]
 
 
-
 def book_for(case: dict[str, Any]) -> xlroot.Book:
     """The case as a sheet: the unknown in B1, the residual in B2, inputs from B3."""
     cells, names = WRITTEN_OUT[case["id"]](case["inputs"])
@@ -47,5 +46,3 @@ def test_the_root_is_the_published_one(case: dict[str, Any], method: str) -> Non
     assert record.verdict.high is not None
     slack = 1e-9 * abs(record.root)
     assert record.verdict.low - slack <= float(digits) <= record.verdict.high + slack
-
-

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from dataclasses import replace
 from datetime import UTC, datetime
 
 from xlroot import methods, search
@@ -149,8 +150,6 @@ def pole(x: float) -> float | Fault:
 
 def refused_outright() -> Record:
     """A question that was refused before any search: nothing was looked at."""
-    from dataclasses import replace
-
     reason = (
         "the function RAND on the chain gives another value each time; replace it by the number "
         "that the design is to be made for"
@@ -170,3 +169,69 @@ def refused_outright() -> Record:
         steps=(),
         held=(),
     )
+
+
+def without_root() -> Record:
+    """A double root: an open method converges and no sign changes."""
+    return solved(lambda x: (x - 0.02) ** 2, method="newton")
+
+
+def refused_at_a_pole() -> Record:
+    return solved(pole, 0.01, 0.09, method="chandrupatla", tolerance=1e-10)
+
+
+def hostile() -> Record:
+    """Every text that came from the workbook tries something."""
+    lines = tuple(
+        replace(line, label=text, unit=text[:8])
+        for line, text in zip(long(len(HOSTILE)), HOSTILE, strict=True)
+    )
+    return replace(
+        solved(),
+        label=HOSTILE[0],
+        unit=HOSTILE[3],
+        statement=HOSTILE[1],
+        residual_label=HOSTILE[7],
+        residual_unit='%"',
+        steps=lines,
+        held=(replace(held()[0], label=HOSTILE[2], value=HOSTILE[0]),),
+        warnings=(HOSTILE[4], HOSTILE[8]),
+    )
+
+
+def with_long_chain() -> Record:
+    """Three hundred formulas, one of them as long as a cell allows."""
+    lines = long()
+    giant = replace(lines[-1], formula="=" + "+".join(f"A{n}" for n in range(1, 1500)))
+    return replace(solved(), steps=(*lines[:-1], giant))
+
+
+def with_nothing_known() -> Record:
+    """Values that are missing, infinite or no numbers."""
+    return replace(
+        refused_outright(),
+        cell=None,
+        label="",
+        present=None,
+        tolerance=math.nan,
+        fingerprint="none",
+        steps=(replace(steps(0.02, Fault.DIV0)[0], value=math.inf),),
+    )
+
+
+def faulting_in_part() -> Record:
+    """A residual that cannot be evaluated over a third of the bracket."""
+    return solved(lambda x: Fault.NUM if x > 0.06 else friction(x), 0.005, 0.05, method="brent")
+
+
+EVERY: tuple[Callable[[], Record], ...] = (
+    solved,
+    without_root,
+    refused_at_a_pole,
+    refused_outright,
+    hostile,
+    with_long_chain,
+    with_nothing_known,
+    faulting_in_part,
+)
+"""All the records that every report has to carry."""

@@ -80,7 +80,7 @@ def mround(x: float, step: float) -> float | Fault:
 
 @worksheet("CEILING", Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER)
 def ceiling(x: float, step: float | None = None) -> float | Fault:
-    """The multiple at or above x; away from zero where both are negative, #NUM! for x > 0 > step."""
+    """The multiple at or above x; both negative: away from zero; x > 0 > step: #NUM!."""
     step = (sign(x) or 1.0) if step is None else step
     if x == 0.0 or step == 0.0:
         return 0.0
@@ -91,7 +91,7 @@ def ceiling(x: float, step: float | None = None) -> float | Fault:
 
 @worksheet("FLOOR", Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER)
 def floor(x: float, step: float | None = None) -> float | Fault:
-    """The multiple at or below x; towards zero where both are negative, #NUM! for x > 0 > step."""
+    """The multiple at or below x; both negative: towards zero; x > 0 > step: #NUM!."""
     step = (sign(x) or 1.0) if step is None else step
     if x == 0.0:
         return 0.0

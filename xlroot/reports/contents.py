@@ -108,7 +108,7 @@ def result(record: Record, most: int = MOST_DIGITS) -> tuple[Fact, ...]:
         facts.append(Fact("Slope there", slope, _per(record.residual_unit, record.unit)))
     if record.conditioning is not None:
         moved = plain(record.conditioning, 4)
-        facts.append(Fact("Shift per residual", moved, _per(record.unit, record.residual_unit)))
+        facts.append(Fact("Conditioning", moved, _per(record.unit, record.residual_unit)))
     return tuple(facts)
 
 

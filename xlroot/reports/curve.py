@@ -98,8 +98,14 @@ def _limits(values: list[float]) -> tuple[float, float, bool]:
         return -1.0, 1.0, False
     if not usual or sizes[-1] <= SPIKE * usual:
         return bottom, top, False
-    limit = 2.0 * usual
+    limit = _round_up(2.0 * usual)
     return max(bottom, -limit), min(top, limit), True
+
+
+def _round_up(number: float) -> float:
+    """The number rounded up to one significant digit, for the end of an axis."""
+    unit: float = 10.0 ** math.floor(math.log10(number))
+    return math.ceil(number / unit) * unit
 
 
 def _pieces(

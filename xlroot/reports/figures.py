@@ -22,6 +22,9 @@ INPUT_DIGITS = 15
 
 _SMALLEST_PLAIN = -4
 _LARGEST_PLAIN = 15
+_NEARLY = Decimal("1.05")
+"""What is within five percent of a power of ten counts as that: tolerances are stated in them."""
+
 _EXACT = Context(prec=2000)
 
 
@@ -59,15 +62,16 @@ def known(
     none is added.
 
     No figure has more than `most` significant digits. Where the ends of the enclosure need more
-    than that to be told apart, they are written further apart than they are, never closer.
+    than that to be told apart, they are written further apart than they are, never closer. An
+    enclosure that is a single double is written as the shortest text that reads back as it.
     """
     if low is None or high is None:
         return Known(_to_place(root, _place(Decimal(repr(error))) + 1, most), None, None, None)
     exact, bottom, top = Decimal(root), Decimal(low), Decimal(high)
     spread = max(_EXACT.subtract(top, exact), _EXACT.subtract(exact, bottom))
-    if spread <= 0:
-        point = plain(root, most)
-        return Known(point, point, point, _bound(Decimal(point.text), bottom, top))
+    if spread <= 0 and most >= MOST_DIGITS:
+        point = Figure(root, _tidy(repr(root)))
+        return Known(point, point, point, Figure(0.0, "0"))
     place = _place(spread)
     figure = _to_place(root, place, most)
     return Known(
@@ -80,7 +84,7 @@ def known(
 
 def _place(spread: Decimal) -> int:
     """The power of ten of the last digit worth writing for a root known to within `spread`."""
-    return spread.adjusted() if spread > 0 else -400
+    return (spread * _NEARLY).adjusted() if spread > 0 else -400
 
 
 def _to_place(number: float, place: int, most: int) -> Figure:

@@ -37,32 +37,39 @@ _BREAKABLE = frozenset(",;+*/^&=<>)-_:")
 """Signs after which a long word, such as a formula, may be broken."""
 
 
-def wrapped(text: str, columns: int) -> list[str]:
-    """The text in lines of at most so many columns, broken at spaces, within a word if it must."""
+Measure = Callable[[str], float]
+
+
+def wrapped(text: str, room: float, measure: Measure = width) -> list[str]:
+    """The text in lines no wider than `room`, broken at spaces, within a word if it must be."""
     lines: list[str] = []
     line = ""
     for word in text.split(" "):
         joined = f"{line} {word}" if line else word
-        if width(joined) <= columns:
+        if measure(joined) <= room:
             line = joined
             continue
         if line:
             lines.append(line)
-        *full, line = _chopped(word, columns)
+        *full, line = _chopped(word, room, measure)
         lines.extend(full)
     return [*lines, line]
 
 
-def _chopped(word: str, columns: int) -> Iterator[str]:
-    while width(word[: columns + 1]) > columns:
-        end, used = 0, 0
-        while not end or used + width(word[end]) <= columns:
-            used += width(word[end])
+def _chopped(word: str, room: float, measure: Measure) -> Iterator[str]:
+    start = 0
+    while True:
+        end, used = start, 0.0
+        while end < len(word) and (end == start or used + measure(word[end]) <= room):
+            used += measure(word[end])
             end += 1
-        at = max((n + 1 for n in range(end // 2, end) if word[n] in _BREAKABLE), default=end)
-        yield word[:at]
-        word = word[at:]
-    yield word
+        if end == len(word):
+            yield word[start:]
+            return
+        middle = start + (end - start) // 2
+        at = max((n + 1 for n in range(middle, end) if word[n] in _BREAKABLE), default=end)
+        yield word[start:at]
+        start = at
 
 
 def hanging(first: str, text: str, columns: int) -> list[str]:

@@ -52,9 +52,8 @@ class Charts:
         chart = self._chart()
         label = printable(record.label, 60) or "unknown"
         _axis(chart.x_axis, _titled(label, record.unit), curve.left, curve.right)
-        named = printable(record.residual_label, 60) or "residual"
         bottom, top = (curve.bottom, curve.top) if curve.clipped else (None, None)
-        _axis(chart.y_axis, _titled(named, record.residual_unit), bottom, top)
+        _axis(chart.y_axis, _titled("residual", record.residual_unit), bottom, top)
         line = self._series("residual", _gapped(curve.pieces))
         line.marker.symbol = "none"
         _stroke(line, ink.ACCENT, 1.25)

@@ -14,7 +14,8 @@ from xlroot.reports.figures import SHEET_DIGITS, Figure
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.charts import Charts, Place
 from xlroot.reports.sheet.ink import Letter
-from xlroot.reports.sheet.paper import Paper, Span
+from xlroot.reports.sheet.names import printable
+from xlroot.reports.sheet.paper import PAGE_HEIGHT, Paper, Span
 from xlroot.reports.sheet.tables import write_cells, write_iterates
 
 if TYPE_CHECKING:
@@ -24,7 +25,12 @@ WIDTHS = (15.0, 20.0, 16.5, 9.5, 15.5, 15.5)
 LEFT, RIGHT = Span(1, 4), Span(5, 6)
 _LABEL, _VALUE, _UNIT, _SECOND, _LAST = 1, 3, 4, 5, 6
 
-CHART_HEIGHT = 172.0
+CHART_HEIGHTS = 118.0, 190.0
+"""The least and the most in points: charts give way to what has to be signed."""
+
+HEADING, FACT, GAP, NAMES, SIGNATURE = 13.0, 12.5, 6.0, 11.0, 20.0
+WARNING, CAUTION = Letter(ink.SMALL, ink.WARN), Letter(ink.FINE, ink.GREY)
+LONGEST_TITLE = 120
 SIGNATURES = ("prepared", "checked", "approved")
 
 
@@ -36,8 +42,8 @@ def write_page(sheet: Worksheet, record: Record, count: str) -> None:
     _result(paper, record)
     _question(paper, record)
     _charts(paper, record)
-    _paragraphs(paper, "Warnings", record.warnings, Letter(ink.SMALL, ink.WARN))
-    _paragraphs(paper, "Cautions", record.cautions, Letter(ink.FINE, ink.GREY))
+    _paragraphs(paper, "Warnings", record.warnings, WARNING)
+    _paragraphs(paper, "Cautions", record.cautions, CAUTION)
     _provenance(paper, record)
     _signatures(paper)
     if record.steps or record.iterates:
@@ -59,7 +65,7 @@ def _title(paper: Paper, record: Record) -> int:
     paper.put(1, "RECORD OF A SOLVE", ink.HEADING)
     paper.put(_LAST, contents.made_with(record), ink.FAINT, side="right")
     paper.end_row(12.0)
-    title = contents.sought(record)
+    title = printable(contents.sought(record), LONGEST_TITLE)
     paper.end_row(paper.paragraph(paper.whole, title, Letter(ink.TITLE, ink.BLACK, "bold")))
     paper.paragraph(paper.whole, f"in {contents.place(record)}", ink.LABEL)
     paper.rule(paper.whole, colour=ink.ACCENT)
@@ -103,13 +109,10 @@ def _result(paper: Paper, record: Record) -> None:
                 paper.merge(Span(2, _VALUE), paper.row, paper.row)
         else:
             paper.put(_VALUE, fact.content, letter)
-        paper.end_row(22.0 if n == 0 else 12.5)
+        paper.end_row(22.0 if n == 0 else FACT)
     reason = contents.reason(record)
-    height = paper.paragraph(RIGHT, reason, ink.PLAIN, row=top + 1)
-    paper.sheet.unmerge_cells(
-        start_row=top + 1, end_row=top + 1, start_column=RIGHT.first, end_column=RIGHT.last
-    )
-    short = height - 12.5 * (len(facts) - 1)
+    height = paper.wrap(RIGHT, reason, row=top + 1)
+    short = height - FACT * (len(facts) - 1)
     if short > 0:
         paper.end_row(short)
     paper.merge(RIGHT, top + 1, paper.row - 1)
@@ -121,10 +124,10 @@ def _question(paper: Paper, record: Record) -> None:
     """The question at the left, the search at the right."""
     paper.heading("Question", LEFT)
     paper.heading("Search", RIGHT)
-    paper.end_row(13.0)
+    paper.end_row(HEADING)
     left, right = contents.question(record), contents.effort(record)
     for n in range(max(len(left), len(right))):
-        height = 12.5
+        height = FACT
         if n < len(left):
             _fact(paper, left[n], _LABEL, 2, Span(2, 4))
         if n < len(right):
@@ -154,56 +157,70 @@ def _charts(paper: Paper, record: Record) -> None:
         paper.heading(f"Residual over the bracket{cut}", wide)
     if lengths is not None:
         paper.heading(f"{lengths.what} by iteration", narrow)
-    paper.end_row(13.0)
-    charts, row = Charts(paper.sheet), paper.row
+    paper.end_row(HEADING)
+    charts = Charts(paper.sheet)
+    least, most = CHART_HEIGHTS
+    height = min(max(PAGE_HEIGHT - paper.used - GAP - 2.0 - _closing(paper, record), least), most)
     if shape is not None:
-        charts.residual(shape, record, _place(paper, wide, row))
+        charts.residual(shape, record, _place(paper, wide, height))
     if lengths is not None:
-        charts.narrowing(lengths, record, _place(paper, narrow, row))
-    paper.end_row(CHART_HEIGHT)
-    paper.gap()
+        charts.narrowing(lengths, record, _place(paper, narrow, height))
+    paper.end_row(height)
+    paper.gap(GAP)
 
 
-def _place(paper: Paper, span: Span, row: int) -> Place:
-    return Place(span.first, row, paper.points(span) - 6.0, CHART_HEIGHT)
+def _place(paper: Paper, span: Span, height: float) -> Place:
+    return Place(span.first, paper.row, paper.points(span) - 6.0, height)
 
 
 def _paragraphs(paper: Paper, title: str, texts: Sequence[str], letter: Letter) -> None:
     if not texts:
         return
-    heights = [paper.height_of(text, paper.whole, letter) for text in texts]
-    paper.keep(13.0 + heights[0])
+    paper.keep(HEADING + paper.height_of(texts[0], paper.whole, letter))
     paper.heading(title)
-    paper.end_row(13.0)
+    paper.end_row(HEADING)
     for text in texts:
         paper.keep(paper.height_of(text, paper.whole, letter))
         paper.end_row(paper.paragraph(paper.whole, text, letter))
-    paper.gap()
+    paper.gap(GAP)
 
 
 def _provenance(paper: Paper, record: Record) -> None:
     facts = contents.provenance(record)
-    heights = [max(paper.height_of(text_of(f.content), Span(2, 6), ink.CELL), 11.5) for f in facts]
-    paper.keep(13.0 + sum(heights))
+    paper.keep(HEADING + FACT * len(facts))
     paper.heading("Provenance")
-    paper.end_row(13.0)
-    for fact, height in zip(facts, heights, strict=True):
+    paper.end_row(HEADING)
+    for fact in facts:
         paper.put(1, fact.label, ink.FAINT)
-        paper.paragraph(Span(2, 6), text_of(fact.content), ink.CELL)
-        paper.end_row(height)
+        height = paper.paragraph(Span(2, 6), text_of(fact.content), ink.CELL)
+        paper.end_row(max(height, 11.5))
     paper.gap(4.0)
 
 
 def _signatures(paper: Paper) -> None:
     """Lines for a name, a date and a signature each."""
-    paper.keep(13.0 + 22.0 * len(SIGNATURES))
-    columns = ((2, "name"), (_VALUE, "date"), (_SECOND, "signature"))
-    for column, text in columns:
+    paper.keep(NAMES + SIGNATURE * len(SIGNATURES))
+    for column, text in ((2, "name"), (_VALUE, "date"), (_SECOND, "signature")):
         paper.put(column, text, ink.FAINT)
-    paper.end_row(11.0)
+    paper.end_row(NAMES)
     for text in SIGNATURES:
         cell = paper.put(1, text, ink.LABEL)
         cell.alignment = ink.aligned("left", down="bottom")
         for span in (Span(2, 2), Span(3, 4), RIGHT):
             paper.rule(span)
-        paper.end_row(20.0)
+        paper.end_row(SIGNATURE)
+
+
+def _closing(paper: Paper, record: Record) -> float:
+    """The height of what follows the charts, so that they leave room for it on the page."""
+    notes = (
+        (record.warnings, WARNING),
+        (record.cautions, CAUTION),
+    )
+    height = sum(
+        HEADING + GAP + sum(paper.height_of(text, paper.whole, letter) for text in texts)
+        for texts, letter in notes
+        if texts
+    )
+    provenance = HEADING + FACT * len(contents.provenance(record)) + 4.0
+    return height + provenance + NAMES + SIGNATURE * len(SIGNATURES)

@@ -13,9 +13,9 @@ from xlroot.cells import column_name
 from xlroot.reports import contents
 from xlroot.reports.contents import Content
 from xlroot.reports.figures import Figure, number_format
-from xlroot.reports.layout import wrapped
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.ink import Fit, Letter
+from xlroot.reports.sheet.letters import lines
 from xlroot.reports.sheet.names import printable, stored, unit_suffix
 
 if TYPE_CHECKING:
@@ -25,8 +25,14 @@ if TYPE_CHECKING:
 A4 = 9
 """The code of the paper (ECMA-376 part 1, section 18.3.1.63)."""
 
-PAGE_HEIGHT = 715.0
+PAGE_HEIGHT = 720.0
 """Points of a page that rows may fill: A4 less the margins, and a little for rounding."""
+
+TALLEST_ROW = 409.0
+"""Points that a row may be high at most in a spreadsheet."""
+
+PADDING = 6.0
+"""Points that a cell leaves free at its sides."""
 
 LINE = 1.32
 """Height of a line of text over its size."""
@@ -84,29 +90,35 @@ class Paper:
             cell.number_format = number_format(content.text) + unit_suffix(unit)
             fit = Fit.SHRINK
         else:
-            text, fit = contents.text_of(content), Fit.OVER
-            cell.value = stored(printable(text)) or None
-            cell.data_type = "s" if cell.value is not None else "n"
-            cell.quotePrefix = text[:1] in ("=", "+", "-", "@", "'", "\t", "\r")
+            _as_text(cell, printable(contents.text_of(content)))
+            fit = Fit.OVER
         cell.font = ink.font(letter)
         cell.alignment = ink.aligned(side, fit, indent=indent)
         return cell
 
-    def paragraph(
-        self,
-        span: Span,
-        text: str,
-        letter: Letter = ink.PLAIN,
-        *,
-        indent: int = 0,
-        row: int | None = None,
+    def wrap(
+        self, span: Span, text: str, letter: Letter = ink.PLAIN, *, row: int | None = None
     ) -> float:
-        """Writes a text over several columns in as many lines as it needs; gives its height."""
-        at = self.row if row is None else row
-        cell = self.put(span.first, text, letter, row=at)
-        cell.alignment = ink.aligned("left", Fit.WRAP, indent=indent)
-        self.merge(span, at, at)
+        """Writes a text that is to fill a span in as many lines as it needs; gives their height.
+
+        The span is not merged yet.
+        """
+        cell = self.put(span.first, text, letter, row=row)
+        cell.alignment = ink.aligned("left", Fit.WRAP)
         return self.height_of(text, span, letter)
+
+    def paragraph(self, span: Span, text: str, letter: Letter = ink.PLAIN) -> float:
+        """Writes a text over the columns of the current row; gives the height that it needs."""
+        height = self.wrap(span, text, letter)
+        self.merge(span, self.row, self.row)
+        return height
+
+    def written(self, span: Span, parts: Sequence[str], letter: Letter) -> None:
+        """Writes lines below each other in one cell over the columns of the current row."""
+        cell = self.put(span.first, "", letter)
+        _as_text(cell, "\n".join(parts))
+        cell.alignment = ink.aligned("left", Fit.WRAP)
+        self.merge(span, self.row, self.row)
 
     def merge(self, span: Span, top: int, bottom: int) -> None:
         if span.first < span.last or top < bottom:
@@ -118,8 +130,9 @@ class Paper:
 
     def end_row(self, height: float) -> None:
         """Gives the current row its height and goes on to the next."""
-        self.sheet.row_dimensions[self.row].height = round(max(height, 3.0) * 4) / 4
-        self.used += height
+        given = min(round(max(height, 3.0) * 4) / 4, TALLEST_ROW)
+        self.sheet.row_dimensions[self.row].height = given
+        self.used += given
         self.row += 1
 
     def gap(self, height: float = 6.0) -> None:
@@ -165,9 +178,11 @@ class Paper:
 
     def height_of(self, text: str, span: Span, letter: Letter) -> float:
         """The height that a text needs in a span."""
-        room = self.points(span) - 6.0
-        lines = len(_lines(printable(text), room, letter))
-        return lines * letter.size * LINE + 2.0
+        return len(self.lines_of(text, span, letter)) * letter.size * LINE + 2.0
+
+    def lines_of(self, text: str, span: Span, letter: Letter) -> list[str]:
+        """The text in the lines that a span breaks it into."""
+        return lines(printable(text), self.points(span) - PADDING, letter)
 
     # -- printing ------------------------------------------------------------------------------
 
@@ -201,6 +216,18 @@ class Paper:
             part.color = ink.GREY
 
 
+def _as_text(cell: Cell, text: str) -> None:
+    """Makes the cell hold the text as text, whatever a spreadsheet would take it for."""
+    if not text:
+        return
+    cell.value = stored(text)
+    cell.data_type = "s"
+    cell.quotePrefix = text[0] in _SUSPECT
+
+
+_SUSPECT = frozenset("=+-@'")
+"""First characters that would turn a text into something else when its cell is edited."""
+
 LONGEST_HEADER = 80
 
 
@@ -210,21 +237,3 @@ def _header(text: str) -> str:
     if len(shown) > LONGEST_HEADER:
         shown = "…" + shown[-LONGEST_HEADER:]
     return shown.replace("&", "&&").replace("&[", "& [")
-
-
-def _lines(text: str, room: float, letter: Letter) -> list[str]:
-    """Lines of at most so many points; letters are taken as wide as their average."""
-    ems = sum(map(_em, text)) or 1.0
-    average = ems / max(len(text), 1) * letter.size
-    if letter.weight == "bold":
-        average *= 1.08
-    return wrapped(text, max(int(room / (average * 1.04)), 4))
-
-
-def _em(character: str) -> float:
-    """About how wide a character is in Arial, over the size (from the font's own metrics)."""
-    if character in " .,;:!|'ijlIft()[]/\\-":
-        return 0.31
-    if character.isupper() or character in "mw%@<>=+~±":
-        return 0.68
-    return 0.56 if ord(character) < 0x2E80 else 1.0

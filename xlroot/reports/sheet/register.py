@@ -11,6 +11,7 @@ from xlroot.reports import contents
 from xlroot.reports.figures import SHEET_DIGITS, Figure
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.ink import Letter
+from xlroot.reports.sheet.names import printable
 from xlroot.reports.sheet.paper import Paper, Span
 
 if TYPE_CHECKING:
@@ -56,7 +57,7 @@ def _line(paper: Paper, number: int, record: Record, page: str) -> None:
     at.font = ink.link_font()
     heights = [
         paper.paragraph(Span(_CELL, _CELL), contents.place(record), ink.CELL),
-        paper.paragraph(Span(_SOUGHT, _SOUGHT), contents.sought(record), ink.CELL),
+        paper.paragraph(Span(_SOUGHT, _SOUGHT), printable(contents.sought(record), 120), ink.CELL),
     ]
     found = contents.figures(record, SHEET_DIGITS)
     if found is not None:

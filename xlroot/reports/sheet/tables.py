@@ -5,13 +5,18 @@ from __future__ import annotations
 from collections.abc import Sequence
 
 from xlroot.record import Line
+from xlroot.reports.characters import visible
 from xlroot.reports.contents import Table, text_of
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.ink import Letter
-from xlroot.reports.sheet.paper import Paper, Span
+from xlroot.reports.sheet.letters import lines
+from xlroot.reports.sheet.names import printable
+from xlroot.reports.sheet.paper import LINE, PADDING, Paper, Span
 
 ROW = 11.5
 HEADING = 13.0
+LONGEST_LABEL = 200
+LINES_A_ROW = 30
 _FORMULA = Span(5, 6)
 _SHEET = Letter(ink.SMALL, ink.ACCENT, "bold")
 
@@ -23,10 +28,11 @@ def write_cells(paper: Paper, table: Table, lines: Sequence[Line]) -> None:
     _begin(paper, table, _columns(table))
     sheet = None
     for line, (_, label, value, unit, formula) in zip(lines, table.rows, strict=True):
+        named = printable(text_of(label), LONGEST_LABEL)
+        first, *further = _parts(paper, text_of(formula))
         height = max(
-            paper.height_of(text_of(label), Span(2, 2), ink.CELL),
-            paper.height_of(text_of(formula), _FORMULA, ink.CELL) if formula else 0.0,
-            paper.height_of(text_of(unit), Span(4, 4), ink.CELL) if unit else 0.0,
+            paper.height_of(named, Span(2, 2), ink.CELL),
+            _height(first),
             ROW,
         )
         fresh = line.cell.sheet != sheet
@@ -36,13 +42,32 @@ def write_cells(paper: Paper, table: Table, lines: Sequence[Line]) -> None:
             paper.paragraph(paper.whole, f"sheet {sheet}", _SHEET)
             paper.end_row(HEADING)
         paper.put(1, line.cell.address, ink.CELL)
-        paper.paragraph(Span(2, 2), text_of(label), ink.CELL)
+        paper.paragraph(Span(2, 2), named, ink.CELL)
         paper.put(3, value, ink.CELL, side="right")
-        paper.paragraph(Span(4, 4), text_of(unit), ink.CELL, indent=1)
-        paper.paragraph(_FORMULA, text_of(formula), ink.CELL)
+        paper.put(4, unit, ink.CELL, indent=1)
+        _formula(paper, first)
         paper.end_row(height)
+        for part in further:
+            _room(paper, table, _height(part))
+            _formula(paper, part)
+            paper.end_row(_height(part))
     paper.rule(paper.whole, row=paper.row - 1)
     paper.gap(10.0)
+
+
+def _parts(paper: Paper, formula: str) -> list[list[str]]:
+    """A formula in lines, and these in parts that fit a row each: it is shown whole, however long,
+    and broken where we say, not where a host does."""
+    rows = lines(visible(formula), paper.points(_FORMULA) - PADDING, ink.CELL)
+    return [rows[at : at + LINES_A_ROW] for at in range(0, len(rows), LINES_A_ROW)]
+
+
+def _height(part: list[str]) -> float:
+    return len(part) * ink.SMALL * LINE + 2.0
+
+
+def _formula(paper: Paper, part: list[str]) -> None:
+    paper.written(_FORMULA, part, ink.CELL)
 
 
 def write_iterates(paper: Paper, table: Table) -> None:

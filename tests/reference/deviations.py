@@ -1,0 +1,2 @@
+DEVIATIONS: dict[int, str] = {}
+NOT_ENTERED: set[str] = set()
