@@ -114,8 +114,7 @@ def _area(node: Reference, place: _Place) -> Node:
     left, right = min(columns), max(columns)
     if top < 1 or left < 1 or bottom > LAST_ROW or right > LAST_COLUMN:
         return Literal(Fault.REF)
-    block = Block(sheet, top, left, bottom, right)
-    return Area(block if block.is_cell else place.book.clipped(block))
+    return Area(Block(sheet, top, left, bottom, right))
 
 
 def _sheet(name: str, place: _Place) -> str:

@@ -112,7 +112,7 @@ def _settled(node: Node, cell: Cell, dependence: Dependence, ledger: Ledger) -> 
         found = reference_or_fault(node, Scope(cell, ledger))
         if isinstance(found, Fault):
             return Literal(found)
-        return Area(dependence.bindings.book.clipped(found))
+        return Area(found)
     if isinstance(node, Call):
         inner = tuple(_settled(each, cell, dependence, ledger) for each in node.arguments)
         return replace(node, arguments=inner)
@@ -155,7 +155,7 @@ def _held(steps: tuple[Step, ...], dependence: Dependence, bindings: Bindings) -
         blocks = [each.block for each in walk(step.node) if isinstance(each, Area)]
         for block in dict.fromkeys(blocks):
             values = bindings.book.sheet_by_name[block.sheet].values
-            for cell in block.cells():
+            for cell in bindings.book.clipped(block).cells():
                 if cell not in chain and (cell.row, cell.column) in values:
                     held[cell] = None
     return list(held)

@@ -419,7 +419,7 @@ class Emitter:
     def _terms(self, block: Block) -> list[Expr]:
         """The numbers of a range; texts, logicals and blanks in a range do not count."""
         terms = []
-        for cell in block.cells():
+        for cell in self.ledger.book.clipped(block).cells():
             name = self.variables.get(cell)
             if name is None:
                 value = self.ledger.value(cell)
@@ -437,6 +437,9 @@ class Emitter:
             raise Opaque
         areas_only = all(isinstance(each, Area) or not self.moves(each) for each in node.arguments)
         if node.name in ARRAY_TAKERS and not areas_only:
+            raise Opaque
+        areas = [each.block for each in node.arguments if isinstance(each, Area)]
+        if len(areas) > 1 and any(self.ledger.book.clipped(each) != each for each in areas):
             raise Opaque
         texts = []
         for position, argument in enumerate(node.arguments):
@@ -476,13 +479,13 @@ class Emitter:
             return self.name("k", evaluate(node, Scope(self.cell, self.ledger, forced)))
         if not isinstance(node, Area):
             return self.kept(self.emit(node))
-        block = node.block
-        if block.height * block.width > LARGEST_GRID:
+        block, used = node.block, self.ledger.book.clipped(node.block)
+        if used.height * used.width > LARGEST_GRID:
             raise Opaque
         rows = []
-        for row in range(block.top, block.bottom + 1):
+        for row in range(used.top, used.bottom + 1):
             texts = []
-            for column in range(block.left, block.right + 1):
+            for column in range(used.left, used.right + 1):
                 cell = Cell(block.sheet, row, column)
                 name = self.variables.get(cell)
                 texts.append(name or self.spelled(self.ledger.value(cell)))

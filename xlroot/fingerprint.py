@@ -96,7 +96,7 @@ class _Writer:
     def block(self, block: Block) -> str:
         if block.is_cell:
             return self.cell(block.first)
-        contents = ",".join(map(self.cell, block.cells()))
+        contents = ",".join(map(self.cell, self.ledger.book.clipped(block).cells()))
         return f"[{block.height}x{block.width}:{contents}]"
 
 

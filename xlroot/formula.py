@@ -108,7 +108,7 @@ class Array:
 
 @dataclass(frozen=True, slots=True)
 class Area:
-    """A bound reference (`xlroot.bind`), cut to the part of its sheet that is in use."""
+    """A bound reference (`xlroot.bind`)."""
 
     block: Block
 

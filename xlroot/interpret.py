@@ -128,6 +128,9 @@ ARRAY_TAKERS = frozenset(
 OWN_PREFIX = "XLROOT"
 """How the names of xlroot's own functions begin."""
 
+SINGLE_LINE = frozenset(("SUM", "PRODUCT", "MIN", "MAX", "AVERAGE", "COUNT", "COUNTA", "SUMSQ"))
+"""Functions that take every range by itself, so that unlike extents do no harm."""
+
 REFERENCE_MAKERS = frozenset(("OFFSET", "INDIRECT"))
 """Functions that compute a reference."""
 
@@ -155,9 +158,9 @@ def single(operand: Operand, scope: Scope) -> Value:
     if block is None or block.is_cell:
         return operand.rows[0][0]
     if block.width == 1 and block.top <= scope.cell.row <= block.bottom:
-        return operand.rows[scope.cell.row - block.top][0]
+        return scope.reader.value(Cell(block.sheet, scope.cell.row, block.left))
     if block.height == 1 and block.left <= scope.cell.column <= block.right:
-        return operand.rows[0][scope.cell.column - block.left]
+        return scope.reader.value(Cell(block.sheet, block.top, scope.cell.column))
     return Fault.VALUE
 
 
@@ -209,7 +212,7 @@ def _binary(node: Binary, scope: Scope) -> Operand:
     for operator, right in reversed(pending):
         operate, other = OPERATORS[operator], evaluate(right, scope)
         if scope.mode is Mode.ARRAY and (isinstance(result, Grid) or isinstance(other, Grid)):
-            result = lift(operate, (result, other))
+            result = _lift(operate, (result, other), scope)
         else:
             result = operate(single(result, scope), single(other, scope))
     return result
@@ -219,6 +222,8 @@ def lift(operate: Callable[..., Operand], operands: tuple[Operand, ...]) -> Grid
     """The operation element by element; a single row, column or value is repeated, and what one
     operand lacks is #N/A."""
     grids = [each if isinstance(each, Grid) else Grid(((each,),)) for each in operands]
+    if any(grid.is_cut for grid in grids):
+        raise Unsupported("works on a whole column element by element; name the rows meant")
     height = max(grid.height for grid in grids)
     width = max(grid.width for grid in grids)
     rows = []
@@ -229,6 +234,13 @@ def lift(operate: Callable[..., Operand], operands: tuple[Operand, ...]) -> Grid
             values.append(result.rows[0][0] if isinstance(result, Grid) else result)
         rows.append(tuple(values))
     return Grid(tuple(rows))
+
+
+def _lift(operate: Callable[..., Operand], operands: tuple[Operand, ...], scope: Scope) -> Grid:
+    try:
+        return lift(operate, operands)
+    except Unsupported as error:
+        raise scope.refuse(error.reason) from None
 
 
 def _element(grid: Grid, row: int, column: int) -> Value:
@@ -316,6 +328,10 @@ def _served(
             if isinstance(value, Fault) and take is not Takes.VALUE and not lifted:
                 return value
             arguments.append(value)
+    grids = [each for each in arguments if isinstance(each, Grid)]
+    shapes = {(grid.height, grid.width) for grid in grids}
+    if len(shapes) > 1 and any(grid.is_cut for grid in grids) and entry.name not in SINGLE_LINE:
+        raise Unsupported("compares ranges that reach beyond their sheets' used part")
     if not lifted:
         return entry.rule(*arguments)
     return _lifted(entry, takes, arguments)

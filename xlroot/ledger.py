@@ -98,12 +98,13 @@ class Ledger:
         """The contents of a block."""
         found = self._grids.get(block)
         if found is None:
+            used = self.book.clipped(block)
             rows = tuple(
                 tuple(
                     self.value(Cell(block.sheet, row, column))
-                    for column in range(block.left, block.right + 1)
+                    for column in range(used.left, used.right + 1)
                 )
-                for row in range(block.top, block.bottom + 1)
+                for row in range(used.top, used.bottom + 1)
             )
             found = self._grids[block] = Grid(rows, block)
         return found

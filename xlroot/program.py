@@ -55,10 +55,11 @@ class Frame:
     def grid(self, block: Block) -> Grid:
         if not self.moving(block):
             return self.ledger.grid(block)
-        columns = range(block.left, block.right + 1)
+        used = self.ledger.book.clipped(block)
+        columns = range(used.left, used.right + 1)
         rows = tuple(
             tuple(self.value(Cell(block.sheet, row, column)) for column in columns)
-            for row in range(block.top, block.bottom + 1)
+            for row in range(used.top, used.bottom + 1)
         )
         return Grid(rows, block)
 

@@ -22,7 +22,9 @@ class Grid(NamedTuple):
     """A rectangle of values, row by row, never empty; `block` is where it stands, if in a sheet.
 
     A grid with a block is a reference's content, one without is an array: functions that treat
-    the two differently (text and logicals in SUM, COUNT, …) look at `block`.
+    the two differently (text and logicals in SUM, COUNT, …) look at `block`. Of a reference that
+    reaches beyond the used part of its sheet (a whole column) only the used rows are listed; the
+    rest is blank.
     """
 
     rows: tuple[tuple[Value, ...], ...]
@@ -35,6 +37,18 @@ class Grid(NamedTuple):
     @property
     def width(self) -> int:
         return len(self.rows[0])
+
+    @property
+    def extent(self) -> tuple[int, int]:
+        """Rows and columns of the reference, the blank ones that are not listed included."""
+        if self.block is None:
+            return self.height, self.width
+        return self.block.height, self.block.width
+
+    @property
+    def is_cut(self) -> bool:
+        """Whether blank rows or columns of the reference are not listed."""
+        return self.extent != (self.height, self.width)
 
     def flat(self) -> Iterator[Value]:
         """All values, row by row."""

@@ -62,7 +62,7 @@ def translated(expression: str) -> str:
         swaps |= {"~": ",", "!": " "}
         out += swaps.get(letter, letter)
         position += 1
-    return out
+    return re.sub(r"(?<=[A-Za-z0-9]) \(", "(", out)
 
 
 @cache

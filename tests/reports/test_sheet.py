@@ -15,7 +15,7 @@ from typing import Any
 from xml.etree import ElementTree
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from openpyxl import Workbook, load_workbook
 
@@ -141,7 +141,9 @@ def test_the_curve_and_its_numbers_are_those_of_the_record(book: Any) -> None:
 
 def test_a_formula_is_shown_whole_however_long(book: Any) -> None:
     page = page_of(book, with_long_chain)
-    shown = "".join(texts_of(page)).replace("\n", "")
+    cells = [page.cell(row, 5).value for row in range(1, page.max_row + 1)]
+    parts = [cell for cell in cells if isinstance(cell, str) and cell != "formula"]
+    shown = "".join(parts).replace("\n", "")
     for line in with_long_chain().steps:
         assert line.formula in shown
     assert max(dimension.height or 0 for dimension in page.row_dimensions.values()) <= 409
@@ -172,6 +174,7 @@ def test_a_root_without_enclosure_says_so(book: Any) -> None:
     assert any("estimate" in text for text in texts_of(page_of(book, without_root)))
 
 
+@settings(deadline=None)
 @given(st.text(max_size=80), st.text(max_size=80))
 def test_sheet_names_are_permitted_and_different(first: str, second: str) -> None:
     records = [replace(solved_once(), label=text) for text in (first, second, first)]
@@ -193,6 +196,7 @@ def solved_once() -> Record:
     return _ONCE[0]
 
 
+@settings(deadline=None, max_examples=40)
 @given(label=st.text(), unit=st.text(max_size=20), value=st.floats() | st.text() | st.booleans())
 def test_any_text_and_value_is_carried(label: str, unit: str, value: float | str | bool) -> None:
     from io import BytesIO

@@ -103,7 +103,7 @@ def fact(n: float) -> float | Fault:
 @worksheet("FACTDOUBLE", Takes.NUMBER, gives=Gives.NUMBER)
 def factdouble(n: float) -> float | Fault:
     """n!! of the whole part: the product of every second whole number."""
-    if not -1.0 <= n < 301.0:
+    if not 0.0 <= n < 301.0:
         return Fault.NUM
     product = math.prod(range(int(n), 0, -2))
     return float(product) if product < 1 << 1024 else Fault.NUM

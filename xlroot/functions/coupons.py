@@ -19,7 +19,6 @@ from xlroot.functions.daycount import (
     date_of,
     days_between,
     february_end,
-    month_end,
     serial_of,
 )
 from xlroot.functions.entry import Gives, Takes, Trait, worksheet
@@ -74,7 +73,8 @@ def months_before(day: date, months: int) -> date:
     """The date some months earlier; the end of a month stays one."""
     year, month = divmod(day.year * 12 + day.month - 1 - months, 12)
     last = monthrange(year, month + 1)[1]
-    return date(year, month + 1, last if month_end(day) else min(day.day, last))
+    at_end = day.day == monthrange(day.year, day.month)[1]
+    return date(year, month + 1, last if at_end else min(day.day, last))
 
 
 def frequency_of(number: float) -> int | Fault:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from xlroot.errors import Unsupported
 from xlroot.functions.entry import Gives, Takes, worksheet
 from xlroot.functions.matching import criterion
 from xlroot.functions.totals import added, finite
@@ -25,6 +26,8 @@ def _selected(pairs: tuple[Operand, ...]) -> list[tuple[int, int]] | Fault:
         elif shape != (grid.height, grid.width):
             return Fault.VALUE
         test = criterion(_grid(condition).rows[0][0])
+        if grid.is_cut and test(None):
+            raise Unsupported("counts blank cells beyond the used part of a sheet; name the rows")
         places = (
             [(row, column) for row in range(grid.height) for column in range(grid.width)]
             if chosen is None
@@ -66,8 +69,6 @@ def _single(operand: Operand, condition: Value, target: Operand | None) -> list[
         return _numbers(grid, places)
     laid = _grid(target)
     if (laid.height, laid.width) != (grid.height, grid.width):
-        from xlroot.errors import Unsupported
-
         raise Unsupported("has a range to add that differs in shape from the range of the test")
     return _numbers(laid, places)
 

@@ -51,7 +51,6 @@ def date_(year: float, month: float, day: float) -> float | Fault:
     # Days are counted on in the system that has a 29 February 1900.
     if first < 61:
         found -= 1
-        found = found if found < 60 else found + 0
     return float(found) if 0 <= found <= LAST_SERIAL else Fault.NUM
 
 
@@ -73,7 +72,7 @@ def _calendar(name: str, part: str) -> Entry:
         day = day_of(number)
         return day if isinstance(day, Fault) else float(getattr(day, part))
 
-    return rule  # type: ignore[return-value]
+    return rule
 
 
 YEAR = _calendar("YEAR", "year")
@@ -134,7 +133,7 @@ def isoweeknum(number: float) -> float | Fault:
 
 @worksheet("WEEKNUM", Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER, traits=CALENDAR)
 def weeknum(number: float, kind: float = 1.0) -> float | Fault:
-    """The week of the year; weeks begin on Sunday (1), Monday (2), other days (11 to 17); 21 ISO."""
+    """The week of the year; weeks begin on Sunday (1), Monday (2), others (11 to 17); 21: ISO."""
     day, form = day_of(number), int(kind)
     if isinstance(day, Fault):
         return day

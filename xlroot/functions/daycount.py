@@ -9,16 +9,16 @@ it is refused. Dates are serials of the 1900 system from 1 March 1900 on, cut to
 from __future__ import annotations
 
 import math
-from calendar import isleap, monthrange
-from datetime import date, timedelta
+from calendar import isleap
+from datetime import date
 from enum import Enum
 
 from xlroot.errors import Unsupported
+from xlroot.functions.dates import day_of, days_360, serial
 from xlroot.values import Fault
 
-_ORIGIN = date(1899, 12, 30)
-_FIRST, _LAST = 61, 2_958_465
-"""1 March 1900 and 31 December 9999."""
+FIRST_SURE = 61.0
+"""1 March 1900: before it the system's days are not the calendar's."""
 
 
 class Basis(Enum):
@@ -36,55 +36,35 @@ def basis_of(number: float) -> Basis | Fault:
     return Basis(math.trunc(number)) if 0.0 <= number < 5.0 else Fault.NUM
 
 
-def date_of(serial: float) -> date | Fault:
+def date_of(number: float) -> date | Fault:
     """The date of a serial; #NUM! outside the calendar."""
-    day = math.floor(serial)
-    if day < 0 or day > _LAST:
-        return Fault.NUM
-    if day < _FIRST:
-        raise Unsupported("a date lies before 1 March 1900, where hosts count days differently")
-    return _ORIGIN + timedelta(days=day)
+    if 0.0 <= number < FIRST_SURE:
+        raise _too_early()
+    return day_of(number)
 
 
 def serial_of(day: date) -> float:
     """The serial of a date."""
-    serial = (day - _ORIGIN).days
-    if serial < _FIRST:
-        raise Unsupported("a date lies before 1 March 1900, where hosts count days differently")
-    return float(serial)
+    number = serial(day) if day.year >= 1900 else 0.0
+    if number < FIRST_SURE:
+        raise _too_early()
+    return number
 
 
-def month_end(day: date) -> bool:
-    """Whether the date is the last of its month."""
-    return day.day == monthrange(day.year, day.month)[1]
+def _too_early() -> Unsupported:
+    return Unsupported("a date lies before 1 March 1900, where hosts count days differently")
 
 
 def february_end(day: date) -> bool:
     """Whether the date is the last of February."""
-    return day.month == 2 and month_end(day)
+    return day.month == 2 and day.day == (29 if isleap(day.year) else 28)
 
 
 def days_between(start: date, end: date, basis: Basis) -> int:
     """The days from start to end as the basis counts them."""
-    if basis is Basis.THIRTY_US:
-        return _thirty_us(start, end)
-    if basis is Basis.THIRTY_EUROPE:
-        return _thirty(start, end, min(start.day, 30), min(end.day, 30))
+    if basis is Basis.THIRTY_US or basis is Basis.THIRTY_EUROPE:
+        return days_360(start, end, european=basis is Basis.THIRTY_EUROPE)
     return (end - start).days
-
-
-def _thirty_us(start: date, end: date) -> int:
-    first, last = start.day, end.day
-    if february_end(start):
-        last = 30 if february_end(end) else last
-        first = 30
-    if last == 31 and first >= 30:
-        last = 30
-    return _thirty(start, end, min(first, 30), last)
-
-
-def _thirty(start: date, end: date, first: int, last: int) -> int:
-    return 360 * (end.year - start.year) + 30 * (end.month - start.month) + last - first
 
 
 def year_part(start: date, end: date, basis: Basis) -> float:

@@ -107,15 +107,23 @@ def index(
     if isinstance(operand, Fault):
         return operand
     grid = _grid(operand)
+    height, width = grid.extent
     down, right = int(row), 0 if column is None else int(column)
-    if column is None and grid.height == 1 and grid.width > 1:
+    if column is None and height == 1 and width > 1:
         down, right = 1 if down else 0, down
-    elif column is None and grid.width == 1:
+    elif column is None and width == 1:
         right = 1
     if down < 0 or right < 0:
         return Fault.VALUE
-    if down > grid.height or right > grid.width:
+    if down > height or right > width:
         return Fault.REF
+    if grid.is_cut:
+        if not (down and right):
+            raise Unsupported(
+                "takes a line out of a range that reaches beyond its sheet's used part"
+            )
+        if down > grid.height or right > grid.width:
+            return None
     return _part(grid, down, right)
 
 
@@ -264,13 +272,13 @@ def xmatch(
 @worksheet("ROWS", Takes.RAW, gives=Gives.NUMBER)
 def rows(operand: Operand) -> float | Fault:
     """How many rows."""
-    return operand if isinstance(operand, Fault) else float(_grid(operand).height)
+    return operand if isinstance(operand, Fault) else float(_grid(operand).extent[0])
 
 
 @worksheet("COLUMNS", Takes.RAW, gives=Gives.NUMBER)
 def columns(operand: Operand) -> float | Fault:
     """How many columns."""
-    return operand if isinstance(operand, Fault) else float(_grid(operand).width)
+    return operand if isinstance(operand, Fault) else float(_grid(operand).extent[1])
 
 
 @worksheet("ROW", Takes.RAW)

@@ -164,7 +164,11 @@ def counta(*operands: Operand) -> float:
 @worksheet("COUNTBLANK", Takes.RAW, gives=Gives.NUMBER)
 def countblank(operand: Operand) -> float:
     """How many cells are blank or hold an empty text."""
-    return float(sum(value is None or value == "" for value, _ in _values((operand,))))
+    listed = sum(value is None or value == "" for value, _ in _values((operand,)))
+    if isinstance(operand, Grid):
+        height, width = operand.extent
+        listed += height * width - operand.height * operand.width
+    return float(listed)
 
 
 @worksheet("SUMPRODUCT", Takes.RAW, repeats=1, gives=Gives.NUMBER)

@@ -189,7 +189,7 @@ class _Formulas(Mapping[Place, Formula]):
         return found
 
     def __contains__(self, place: object) -> bool:
-        return place in self._places and self.get(place) is not None  # type: ignore[call-overload]
+        return place in self._places and self.get(place) is not None
 
     def __iter__(self) -> Iterator[Place]:
         return (place for place in self._places if place in self)

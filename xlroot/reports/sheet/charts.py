@@ -12,6 +12,7 @@ from typing import TYPE_CHECKING, NamedTuple
 from xlroot.record import Record
 from xlroot.reports.curve import Curve, Narrowing
 from xlroot.reports.sheet import ink
+from xlroot.reports.sheet.entries import as_number
 from xlroot.reports.sheet.names import printable
 
 if TYPE_CHECKING:
@@ -121,7 +122,7 @@ class Charts:
         for row, (x, y) in enumerate(points, 2):
             for column, number in ((first, x), (first + 1, y)):
                 if number is not None:
-                    self.sheet.cell(row, column, number).font = ink.font(ink.FAINT)
+                    as_number(self.sheet.cell(row, column), number)
         self.column += 3
         last = len(points) + 1
         series = Series(self._reference(first + 1, last), self._reference(first, last), title=title)

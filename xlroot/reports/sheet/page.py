@@ -104,7 +104,7 @@ def _result(paper: Paper, record: Record) -> None:
         if isinstance(fact.content, Figure):
             column = 2 if n == 0 else _VALUE
             paper.put(column, fact.content, letter, side="right")
-            paper.put(_UNIT, fact.unit, ink.LABEL, indent=1)
+            paper.unit(_UNIT, fact.unit, ink.LABEL)
             if n == 0:
                 paper.merge(Span(2, _VALUE), paper.row, paper.row)
         else:

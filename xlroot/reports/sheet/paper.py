@@ -7,16 +7,18 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from typing import TYPE_CHECKING, NamedTuple
+from copy import copy
+from typing import TYPE_CHECKING, Any, NamedTuple
 
 from xlroot.cells import column_name
 from xlroot.reports import contents
 from xlroot.reports.contents import Content
 from xlroot.reports.figures import Figure, number_format
 from xlroot.reports.sheet import ink
+from xlroot.reports.sheet.entries import as_number, as_text
 from xlroot.reports.sheet.ink import Fit, Letter
 from xlroot.reports.sheet.letters import lines
-from xlroot.reports.sheet.names import printable, stored, unit_suffix
+from xlroot.reports.sheet.names import printable, unit_suffix
 
 if TYPE_CHECKING:
     from openpyxl.cell import Cell
@@ -51,6 +53,16 @@ class Span(NamedTuple):
     last: int
 
 
+class _Style(NamedTuple):
+    """How a cell looks, as far as writing decides it."""
+
+    letter: Letter
+    side: str
+    fit: Fit
+    indent: int
+    form: str = "General"
+
+
 class Paper:
     """The sheet being filled; `row` is the next free one."""
 
@@ -59,6 +71,7 @@ class Paper:
         self.widths = widths
         self.row = 1
         self.used = 0.0
+        self._styles: dict[_Style, Any] = {}
         self.head = 0.0
         """Height of the rows that are repeated on every page."""
         for column, width in enumerate(widths, 1):
@@ -81,20 +94,34 @@ class Paper:
         side: str = "left",
         unit: str = "",
         indent: int = 0,
+        fit: Fit = Fit.OVER,
         row: int | None = None,
     ) -> Cell:
         """Writes a figure as a number and a text as a text that no spreadsheet takes for more."""
         cell = self.sheet.cell(self.row if row is None else row, column)
         if isinstance(content, Figure) and math.isfinite(content.value):
-            cell.value = content.value
-            cell.number_format = number_format(content.text) + unit_suffix(unit)
-            fit = Fit.SHRINK
+            form = number_format(content.text) + unit_suffix(unit)
+            self._dress(cell, _Style(letter, side, Fit.SHRINK, indent, form))
+            as_number(cell, content.value)
         else:
-            _as_text(cell, printable(contents.text_of(content)))
-            fit = Fit.OVER
-        cell.font = ink.font(letter)
-        cell.alignment = ink.aligned(side, fit, indent=indent)
+            self._dress(cell, _Style(letter, side, fit, indent))
+            as_text(cell, printable(contents.text_of(content)))
         return cell
+
+    def _dress(self, cell: Cell, style: _Style) -> None:
+        """Gives the cell its style; one that was worked out before is copied, ten times faster."""
+        known = self._styles.get(style)
+        if known is None:
+            cell.font = ink.font(style.letter)
+            cell.alignment = ink.aligned(style.side, style.fit, indent=style.indent)
+            cell.number_format = style.form
+            self._styles[style] = copy(cell._style)
+        else:
+            cell._style = copy(known)
+
+    def unit(self, column: int, text: str, letter: Letter) -> None:
+        """Writes a unit beside its number, smaller if it is long."""
+        self.put(column, text, letter, fit=Fit.SHRINK, indent=1)
 
     def wrap(
         self, span: Span, text: str, letter: Letter = ink.PLAIN, *, row: int | None = None
@@ -103,8 +130,7 @@ class Paper:
 
         The span is not merged yet.
         """
-        cell = self.put(span.first, text, letter, row=row)
-        cell.alignment = ink.aligned("left", Fit.WRAP)
+        self.put(span.first, text, letter, fit=Fit.WRAP, row=row)
         return self.height_of(text, span, letter)
 
     def paragraph(self, span: Span, text: str, letter: Letter = ink.PLAIN) -> float:
@@ -115,9 +141,7 @@ class Paper:
 
     def written(self, span: Span, parts: Sequence[str], letter: Letter) -> None:
         """Writes lines below each other in one cell over the columns of the current row."""
-        cell = self.put(span.first, "", letter)
-        _as_text(cell, "\n".join(parts))
-        cell.alignment = ink.aligned("left", Fit.WRAP)
+        as_text(self.put(span.first, "", letter, fit=Fit.WRAP), "\n".join(parts))
         self.merge(span, self.row, self.row)
 
     def merge(self, span: Span, top: int, bottom: int) -> None:
@@ -215,18 +239,6 @@ class Paper:
             part.font = f"{ink.FAMILY},Regular"
             part.color = ink.GREY
 
-
-def _as_text(cell: Cell, text: str) -> None:
-    """Makes the cell hold the text as text, whatever a spreadsheet would take it for."""
-    if not text:
-        return
-    cell.value = stored(text)
-    cell.data_type = "s"
-    cell.quotePrefix = text[0] in _SUSPECT
-
-
-_SUSPECT = frozenset("=+-@'")
-"""First characters that would turn a text into something else when its cell is edited."""
 
 LONGEST_HEADER = 80
 

@@ -62,7 +62,7 @@ def _line(paper: Paper, number: int, record: Record, page: str) -> None:
     found = contents.figures(record, SHEET_DIGITS)
     if found is not None:
         paper.put(_ROOT, found.root, ink.CELL, side="right")
-        paper.put(_UNIT, record.unit, ink.CELL, indent=1)
+        paper.unit(_UNIT, record.unit, ink.CELL)
         if found.bound is not None:
             paper.put(_BOUND, found.bound, ink.CELL, side="right")
         else:

@@ -44,7 +44,7 @@ def write_cells(paper: Paper, table: Table, lines: Sequence[Line]) -> None:
         paper.put(1, line.cell.address, ink.CELL)
         paper.paragraph(Span(2, 2), named, ink.CELL)
         paper.put(3, value, ink.CELL, side="right")
-        paper.put(4, unit, ink.CELL, indent=1)
+        paper.unit(4, text_of(unit), ink.CELL)
         _formula(paper, first)
         paper.end_row(height)
         for part in further:
