@@ -2,9 +2,10 @@
 
 Opposite signs alone do not make a root. Towards a root of a continuous residual its magnitude
 shrinks; towards a pole it grows; across a jump it stays. Where the samples of the search already
-show it shrinking, no more is spent; otherwise the interval is halved down to neighbouring doubles
-and the last halvings decide. The criterion is our own; it can refuse a continuous residual that is
-steeper than doubles resolve, and says jump then.
+show it shrinking, no more is spent. Otherwise the interval is narrowed: by chords, which settle a
+smooth residual in a few evaluations, then by halving down to neighbouring doubles, where the last
+halvings decide. The criterion is our own; it can refuse a continuous residual that is steeper than
+doubles resolve, and says jump then.
 """
 
 from __future__ import annotations
@@ -21,7 +22,11 @@ STEEPER = 2.0
 """A slope across the interval that exceeds its neighbours' by more asks for a closer look."""
 
 COARSE = 1e-9
-"""Tolerances wider than this part of the unknown's size ask for a closer look."""
+"""Tolerances wider than this part of the unknown's size ask for a closer look: a jump could hide
+in such an interval."""
+
+CHORDS = 4
+"""The most chords that a closer look tries before it halves."""
 
 HALVINGS = 80
 """The most halvings that a closer look takes."""
@@ -31,17 +36,27 @@ LAST = 4
 
 SHRINKS = 0.8
 GROWS = 1.5
-"""Factors of the magnitude over the last halvings: x^(1/9) shrinks by 0.73, a simple root by
-0.06; a pole grows by 16; a jump stays."""
+"""Factors of the magnitude over the last halvings: x^(1/9) shrinks by 0.79 at most, a simple root
+by 0.13; a pole grows by 16; a jump stays."""
+
+STEP = 1e-6
+"""A step below this part of the residual nearby is no jump, if the tolerance spans it."""
 
 ROUNDING = 1e-12
-"""A residual below this part of the largest sample is rounding, not a jump."""
+"""A step below this part of the largest sample can be rounding: it is neither called a root nor
+a jump."""
+
+SPREAD = 1e-3
+"""Rounding that hides the sign over more than this part of the bracket is not put down to
+rounding."""
 
 
 class Nature(Enum):
     """What lies between opposite signs."""
 
     ROOT = "root"
+    ROUNDING = "rounding"
+    """The residual is too small there for its sign to be trusted: an estimate of a root."""
     POLE = "pole"
     JUMP = "jump"
     FAULT = "fault"
@@ -55,12 +70,27 @@ class Crossing(NamedTuple):
     f_low: float
     f_high: float
 
+    @property
+    def size(self) -> float:
+        """The larger magnitude of the residual at the ends."""
+        return max(abs(self.f_low), abs(self.f_high))
+
+    def cut(self, x: float, y: float) -> Crossing:
+        """The part with opposite signs after a sample inside."""
+        if (y < 0.0) == (self.f_low < 0.0):
+            return Crossing(x, self.high, y, self.f_high)
+        return Crossing(self.low, x, self.f_low, y)
+
+
+Evaluate = Callable[[float], "float | Fault"]
+Point = tuple[float, float]
+
 
 def examine(
-    f: Callable[[float], float | Fault],
+    f: Evaluate,
     crossing: Crossing,
-    ends: tuple[tuple[float, float], tuple[float, float]],
-    samples: Sequence[tuple[float, float]],
+    ends: tuple[Point, Point],
+    samples: Sequence[Point],
     tolerance: Tolerance,
 ) -> tuple[Nature, int]:
     """What the sign change is, and how many evaluations it took to tell.
@@ -68,67 +98,150 @@ def examine(
     `ends` are the ends of the whole bracket with their residuals, `samples` what was tried
     between them.
     """
-    low, high = crossing.low, crossing.high
+    low, high, f_low, f_high = crossing
     if low == high:
         return Nature.ROOT, 0
-    scale = max(abs(low), abs(high))
-    if tolerance.absolute + tolerance.relative * scale <= COARSE * scale:
-        left, right = ends
-        for sample in samples:
-            x = sample[0]
-            if left[0] < x < low:
-                left = sample
-            elif high < x < right[0]:
-                right = sample
-        if _shrinks(crossing, left, right):
-            return Nature.ROOT, 0
-    known = [abs(y) for _, y in (*ends, *samples) if math.isfinite(y)]
-    return _closer(f, crossing, max(known))
+    left, right = _neighbours(low, high, ends, samples)
+    scale = high if high > -low else -low
+    fine = COARSE * scale
+    if tolerance.absolute + tolerance.relative * scale <= fine and _shrinks(crossing, left, right):
+        return Nature.ROOT, 0
+    look = _CloserLook(f, crossing, left, right)
+    nature = look.by_chords(fine) or look.by_halving()
+    if nature is Nature.JUMP:
+        largest = max(abs(y) for _, y in (*ends, *samples) if math.isfinite(y))
+        span = ends[1][0] - ends[0][0]
+        nature = look.step_or_rounding(largest, tolerance.at(low), span)
+    return nature, look.count
 
 
-def _shrinks(crossing: Crossing, left: tuple[float, float], right: tuple[float, float]) -> bool:
+def _neighbours(
+    low: float, high: float, ends: tuple[Point, Point], samples: Sequence[Point]
+) -> tuple[Point, Point]:
+    """The nearest samples outside the interval; the latest lie nearest, for brackets are nested."""
+    (left, right), missing = ends, 2
+    needs_left, needs_right = left[0] < low, high < right[0]
+    for sample in reversed(samples):
+        x = sample[0]
+        if x < low:
+            if needs_left and left[0] < x:
+                left, needs_left = sample, False
+        elif x > high and needs_right and x < right[0]:
+            right, needs_right = sample, False
+        missing = needs_left + needs_right
+        if not missing:
+            break
+    return left, right
+
+
+def _shrinks(crossing: Crossing, left: Point, right: Point) -> bool:
     """Whether the nearest samples on both sides show the residual falling steadily to zero."""
     low, high, f_low, f_high = crossing
-    slope = (abs(f_low) + abs(f_high)) / (high - low)
+    left_size, right_size = abs(f_low), abs(f_high)
     steepest = 0.0
     if left[0] < low:
-        fall = abs(left[1]) - abs(f_low)
+        fall = abs(left[1]) - left_size
         if fall <= 0.0:
             return False
         steepest = fall / (low - left[0])
     if right[0] > high:
-        fall = abs(right[1]) - abs(f_high)
+        fall = abs(right[1]) - right_size
         if fall <= 0.0:
             return False
-        steepest = max(steepest, fall / (right[0] - high))
-    return slope <= STEEPER * steepest < math.inf
+        slope = fall / (right[0] - high)
+        if slope > steepest:
+            steepest = slope
+    return (left_size + right_size) / (high - low) <= STEEPER * steepest < math.inf
 
 
-def _closer(
-    f: Callable[[float], float | Fault], crossing: Crossing, largest: float
-) -> tuple[Nature, int]:
-    low, high, f_low, f_high = crossing
-    low_is_negative = f_low < 0.0
-    sizes = [max(abs(f_low), abs(f_high))]
-    for count in range(HALVINGS):
-        x = low + (high - low) / 2.0
-        if not low < x < high:
-            break
-        y = f(x)
+class _CloserLook:
+    """An interval with opposite signs that is narrowed until it shows what it is."""
+
+    def __init__(self, f: Evaluate, crossing: Crossing, left: Point, right: Point) -> None:
+        self.f, self.crossing, self.left, self.right = f, crossing, left, right
+        self.count = 0
+
+    def _take(self, x: float) -> Nature | None:
+        """One more sample inside; a nature where it settles the matter at once."""
+        y = self.f(x)
+        self.count += 1
         if isinstance(y, Fault):
-            return Nature.FAULT, count + 1
+            return Nature.FAULT
         if y == 0.0:
-            return Nature.ROOT, count + 1
-        if (y < 0.0) == low_is_negative:
-            low, f_low = x, y
+            return Nature.ROOT
+        before = self.crossing
+        self.crossing = before.cut(x, y)
+        if self.crossing.low != before.low:
+            self.left = (before.low, before.f_low)
         else:
-            high, f_high = x, y
-        sizes.append(max(abs(f_low), abs(f_high)))
-    taken = len(sizes) - 1
-    if sizes[-1] <= ROUNDING * largest:
-        return Nature.ROOT, taken
-    past = sizes[-min(LAST, taken) - 1]
-    factor = sizes[-1] / past if past and math.isfinite(past) else math.inf
-    if factor <= SHRINKS:
-        return Nature.ROOT, taken
-    return (Nature.POLE if factor >= GROWS else Nature.JUMP), taken
+            self.right = (before.high, before.f_high)
+        return None
+
+    def by_chords(self, fine: float) -> Nature | None:
+        """ROOT where chords lead to an interval below `fine` towards which the residual falls."""
+        for _ in range(CHORDS):
+            low, high, f_low, f_high = self.crossing
+            share = abs(f_low) / (abs(f_low) + abs(f_high))
+            x = low + (high - low) * share
+            beside = max(1e-3 * (high - low), 0.5 * fine)
+            if not low < x < high:
+                return None
+            found = self._take(x)
+            if found is not None:
+                return found
+            # The point beside the chord's zero, on the side where the sign is the other.
+            x = x + beside if self.crossing.low == x else x - beside
+            if not self.crossing.low < x < self.crossing.high:
+                return None
+            found = self._take(x)
+            if found is not None:
+                return found
+            width = self.crossing.high - self.crossing.low
+            if width <= fine and _shrinks(self.crossing, self.left, self.right):
+                return Nature.ROOT
+        return None
+
+    def by_halving(self) -> Nature:
+        """What the last halvings before neighbouring doubles show."""
+        sizes = [self.crossing.size]
+        for _ in range(HALVINGS):
+            low, high = self.crossing.low, self.crossing.high
+            x = low + (high - low) / 2.0
+            if not low < x < high:
+                break
+            found = self._take(x)
+            if found is not None:
+                return found
+            sizes.append(self.crossing.size)
+        past = sizes[-min(LAST, len(sizes) - 1) - 1]
+        factor = sizes[-1] / past if past and math.isfinite(past) else math.inf
+        if factor <= SHRINKS:
+            return Nature.ROOT
+        return Nature.POLE if factor >= GROWS else Nature.JUMP
+
+    def step_or_rounding(self, largest: float, permitted: float, span: float) -> Nature:
+        """A step that stays between neighbouring doubles: small enough to be none, or rounding.
+
+        Samples further and further out tell over which distance the residual is no larger than a
+        few such steps. Where the tolerance spans that distance, and the step is small beside the
+        residual nearby, the unknown is as well known as was asked.
+        """
+        step, near = 4.0 * self.crossing.size, 0.0
+        distance = permitted
+        while distance <= SPREAD * span:
+            outside = (self.f(self.crossing.low - distance), self.f(self.crossing.high + distance))
+            self.count += 2
+            left, right = outside
+            if isinstance(left, Fault) or isinstance(right, Fault):
+                return Nature.JUMP
+            if (left < 0.0) != (self.crossing.f_low < 0.0) or (right < 0.0) == (left < 0.0):
+                return Nature.JUMP if step > ROUNDING * largest else Nature.ROUNDING
+            near = min(abs(left), abs(right))
+            if near >= step:
+                break
+            distance *= 4.0
+        if near < step:
+            return Nature.JUMP
+        if distance == permitted and step <= STEP * max(largest, near):
+            return Nature.ROOT
+        return Nature.ROUNDING if step <= ROUNDING * largest else Nature.JUMP

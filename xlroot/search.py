@@ -149,21 +149,33 @@ def run(
 def _bracketing(
     method: Method, f: Residual, low: float, high: float, tolerance: Tolerance, limit: int
 ) -> Run:
-    f_low, f_high = f(low), f(high)
-    ends: tuple[tuple[float, float], ...] = ()
-    for end, value in ((low, f_low), (high, f_high)):
-        if type(value) is not float:
-            assert isinstance(value, Fault)
-            return Run(method, low, high, tolerance, Outcome.FAULTED, (), ends, fault=(end, value))
-        ends = (*ends, (end, value))
-    assert isinstance(f_low, float)
-    assert isinstance(f_high, float)
+    f_low = f(low)
+    if type(f_low) is not float:
+        return _at_a_fault(method, low, high, tolerance, (), (low, f_low))
+    f_high = f(high)
+    if type(f_high) is not float:
+        return _at_a_fault(method, low, high, tolerance, ((low, f_low),), (high, f_high))
     predicted = None if method.predict is None else method.predict(low, high, tolerance)
+    if opposite(f_low, f_high):
+        start = Start(low, high, f_low, f_high, tolerance, low)
+        return _converge(method, f, start, limit, predicted)
+    ends = ((low, f_low), (high, f_high))
     if f_low == 0.0 or f_high == 0.0:
         return _at_an_end(method, low, high, tolerance, ends, predicted)
-    if not opposite(f_low, f_high):
-        return Run(method, low, high, tolerance, Outcome.UNBRACKETED, (), ends, predicted=predicted)
-    return _converge(method, f, Start(low, high, f_low, f_high, tolerance, low), limit, predicted)
+    return Run(method, low, high, tolerance, Outcome.UNBRACKETED, (), ends, predicted=predicted)
+
+
+def _at_a_fault(
+    method: Method,
+    low: float,
+    high: float,
+    tolerance: Tolerance,
+    ends: tuple[tuple[float, float], ...],
+    found: tuple[float, float | Fault],
+) -> Run:
+    end, fault = found
+    assert isinstance(fault, Fault)
+    return Run(method, low, high, tolerance, Outcome.FAULTED, (), ends, fault=(end, fault))
 
 
 def _at_an_end(
@@ -192,31 +204,33 @@ def _at_an_end(
 
 
 def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: int | None) -> Run:
+    # The hot loop: what it costs beside f is most of a short chain's solve, so it is plain.
     a, b, fa, fb, tolerance, _ = start
-    ends = ((a, fa), (b, fb))
     trials = method.trials(start)
     send = trials.send
     low_is_negative = fa < 0.0
     relative = tolerance.relative
-    permitted = math.ulp(max(abs(a), abs(b)))
-    if relative == 0.0 and tolerance.absolute > permitted:
-        permitted = tolerance.absolute
+    permitted = tolerance.absolute
+    finest = math.ulp(a) if -b < a else math.ulp(b)
+    if relative or permitted < finest:
+        permitted = finest
     small = SMALL_STEP * permitted
     samples: list[tuple[float, float]] = []
     keep = samples.append
     reach, before = permitted, math.inf
     fault: tuple[float, Fault] | None = None
     outcome = Outcome.EXHAUSTED
-    count = 0
-    x = next(trials)
-    while count != predicted:
+    # Where the count is known beforehand, it decides; otherwise the width of the bracket.
+    counted = predicted is not None and predicted <= limit
+    stop = -1.0 if counted else permitted
+    x = next(trials) if limit else a
+    for _ in range(predicted if counted and predicted is not None else limit):
         y = f(x)
         if type(y) is not float:
             assert isinstance(y, Fault)
             fault, outcome = (x, y), Outcome.FAULTED
             break
         keep((x, y))
-        count += 1
         if a < x < b:
             if y < 0.0:
                 if low_is_negative:
@@ -232,14 +246,12 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
                 b, fb = x, y
             else:
                 a, fa = x, y
-        if b - a <= permitted and predicted is None:
-            outcome = Outcome.ENCLOSED
-            break
-        if relative and b - a <= tolerance.at(a if abs(fa) < abs(fb) else b):
-            outcome = Outcome.ENCLOSED
-            break
-        if count >= limit:
-            break
+            if b - a <= stop:
+                outcome = Outcome.ENCLOSED
+                break
+            if relative and b - a <= tolerance.at(a if abs(fa) < abs(fb) else b):
+                outcome = Outcome.ENCLOSED
+                break
         if -small < x - before < small:
             # The method's steps have ended; a point just beyond the better end closes in.
             before = math.inf
@@ -248,32 +260,22 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
             continue
         before = x
         x = send(y)
-    if count == predicted and outcome is Outcome.EXHAUSTED:
-        outcome = Outcome.ENCLOSED
+    else:
+        if counted:
+            outcome = Outcome.ENCLOSED
+    ends = ((start.low, start.f_low), (start.high, start.f_high))
+    root, residual, nature, checks = None, None, None, 0
     crossing = Crossing(a, b, fa, fb)
-    kept = tuple(samples)
-    if outcome is not Outcome.ENCLOSED and outcome is not Outcome.EXACT:
-        return Run(
-            method,
-            start.low,
-            start.high,
-            tolerance,
-            outcome,
-            kept,
-            ends,
-            enclosure=crossing,
-            fault=fault,
-            predicted=predicted,
-        )
-    nature, checks = examine(f, crossing, ends, samples, tolerance)
-    root, residual = (a, fa) if abs(fa) <= abs(fb) else (b, fb)
+    if outcome is Outcome.ENCLOSED or outcome is Outcome.EXACT:
+        nature, checks = examine(f, crossing, ends, samples, tolerance)
+        root, residual = (a, fa) if abs(fa) <= abs(fb) else (b, fb)
     return Run(
         method,
         start.low,
         start.high,
         tolerance,
         outcome,
-        kept,
+        tuple(samples),
         ends,
         (),
         root,

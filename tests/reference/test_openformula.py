@@ -42,8 +42,8 @@ def shown(case: Case) -> Value:
 def agrees(value: Value, result: str) -> bool:
     """Whether a value is the published one, to the digits that are printed."""
     text = result.replace("“", '"').replace("”", '"').strip()
-    if text in ("Error", "NA"):
-        return value is Fault.NA if text == "NA" else isinstance(value, Fault)
+    if text in ("Error", "NA", "#N/A"):
+        return isinstance(value, Fault) if text == "Error" else value is Fault.NA
     text = {"FALSE": "False", "Ture": "True"}.get(text, text)
     if text in ("True", "False"):
         return value == (text == "True") and not isinstance(value, (str, Fault))

@@ -47,7 +47,7 @@ def made(
         number = float(result)
         return number if math.isfinite(number) else Fault.NUM
 
-    checked.__module__ = __name__
+    checked.__module__ = rule.__module__
     return worksheet(names, *takes, optional=optional, gives=Gives.NUMBER)(checked)
 
 

@@ -9,11 +9,10 @@ def trials(start: Start) -> Trials:
     """The paper's algorithm: with three points, interpolate if 1 - sqrt(1 - xi) < phi <
     sqrt(xi); keep at least half the tolerance from both ends."""
     # Names follow the paper: 1 is the newest point, 2 the other end, 3 the one before.
-    x1, x2, f1, f2 = start.high, start.low, start.f_high, start.f_low
-    absolute, relative = start.tolerance
-    t = 0.5
+    x2, x1, f2, f1, (absolute, relative), _ = start
+    absolute, relative = 0.5 * absolute, 0.5 * relative
+    x = x1 + 0.5 * (x2 - x1)
     while True:
-        x = x1 + t * (x2 - x1)
         f = yield x
         if (f < 0.0) == (f1 < 0.0):
             x3, f3 = x1, f1
@@ -21,18 +20,22 @@ def trials(start: Start) -> Trials:
             x3, f3 = x2, f2
             x2, f2 = x1, f1
         x1, f1 = x, f
-        best = x1 if abs(f1) < abs(f2) else x2
-        width = abs(x2 - x1)
-        least = 0.5 * (absolute + relative * abs(best)) / width if width else 0.5
+        width = x2 - x1
         t = 0.5
-        # f1 and f2 differ in sign and f3 from f2, so no denominator below is zero when safe.
-        if f3 != f2 and f3 != f1:
-            xi, phi = (x1 - x2) / (x3 - x2), (f1 - f2) / (f3 - f2)
+        # f2 differs in sign from f1 and from f3: of the differences only f3 - f1 can be zero.
+        d32, d31 = f3 - f2, f3 - f1
+        if d31 and width:
+            xi, phi = width / (x2 - x3), (f1 - f2) / d32
             if phi * phi < xi and (1.0 - phi) * (1.0 - phi) < 1.0 - xi:
-                t = (f1 / (f2 - f1)) * (f3 / (f2 - f3)) + (x3 - x1) / (x2 - x1) * (
-                    f1 / (f3 - f1)
-                ) * (f2 / (f3 - f2))
-        t = min(max(t, least), 1.0 - least)
+                t = (f1 / d31) * (f2 / d32) * ((x3 - x1) / width) - (f1 / (f2 - f1)) * (f3 / d32)
+            least = absolute / width if width > 0.0 else -absolute / width
+            if relative:
+                least += relative * abs((x1 if abs(f1) < abs(f2) else x2) / width)
+            if t < least:
+                t = least
+            if t > 1.0 - least:
+                t = 1.0 - least
+        x = x1 + t * width
 
 
 CHANDRUPATLA = Method(
