@@ -119,8 +119,7 @@ def test_indirect_with_a_held_text_is_resolved() -> None:
 def test_what_cannot_be_evaluated_is_refused_with_its_cell(formula: str, words: str) -> None:
     book = book_of({"A1": 1, "A2": formula})
     with pytest.raises(Unsupported, match=words) as refusal:
-        chain, ledger = chain_of(book, "A2", "A1")
-        Program(chain, ledger).real(1.0)
+        residual_at(book, "A2", "A1", 1.0)
     assert refusal.value.cell == "Sheet1!A2"
 
 

@@ -59,7 +59,7 @@ ONLY_IN = {
     "uno": {"hosts"},
     "openpyxl": {"hosts", "reports/sheet"},
     "typer": {"cli"},
-    "rich": {"cli", "reports/terminal"},
+    "rich": {"cli"},
 }
 """Libraries that one place alone may import."""
 
@@ -96,9 +96,9 @@ def for_types_only(tree: ast.AST) -> set[ast.stmt]:
     """Statements under `if TYPE_CHECKING`."""
     guarded: set[ast.stmt] = set()
     for node in ast.walk(tree):
-        if isinstance(node, ast.If) and isinstance(node.test, ast.Name):
-            if node.test.id == "TYPE_CHECKING":
-                guarded.update(each for each in ast.walk(node) if isinstance(each, ast.stmt))
+        test = node.test if isinstance(node, ast.If) else None
+        if isinstance(test, ast.Name) and test.id == "TYPE_CHECKING":
+            guarded.update(each for each in ast.walk(node) if isinstance(each, ast.stmt))
     return guarded
 
 

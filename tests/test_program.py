@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 
-
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
@@ -129,4 +128,6 @@ def test_random_chains_agree_over_real_and_array(formulas: list[str], x: float) 
     for row, formula in enumerate(formulas, start=2):
         contents[f"A{row}"] = f"={formula}+0*{previous}"
         previous = f"A{row}"
-    assert_kinds_agree(program_of(contents, previous, "A1"), [x, 0.0, 1.0, math.nextafter(1.0, 2.0)])
+    assert_kinds_agree(
+        program_of(contents, previous, "A1"), [x, 0.0, 1.0, math.nextafter(1.0, 2.0)]
+    )

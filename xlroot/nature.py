@@ -21,9 +21,9 @@ from xlroot.values import Fault
 STEEPER = 2.0
 """A slope across the interval that exceeds its neighbours' by more asks for a closer look."""
 
-COARSE = 1e-9
-"""Tolerances wider than this part of the unknown's size ask for a closer look: a jump could hide
-in such an interval."""
+COARSE = 1e-8
+"""An interval wider than this part of the unknown's size asks for a closer look: a jump could hide
+in it."""
 
 CHORDS = 4
 """The most chords that a closer look tries before it halves."""
@@ -86,6 +86,35 @@ Evaluate = Callable[[float], "float | Fault"]
 Point = tuple[float, float]
 
 
+def evident(crossing: Crossing, left: Point, right: Point) -> bool:
+    """Whether an interval is a root's without another evaluation.
+
+    It is narrow beside the unknown's size, and the nearest samples on both sides, `left` and
+    `right` (the ends themselves where there are none), show the residual falling steadily to it.
+    """
+    low, high, f_low, f_high = crossing
+    width = high - low
+    if width > COARSE * high and width > COARSE * -low:
+        return False
+    low_size, high_size = abs(f_low), abs(f_high)
+    steepest = 0.0
+    x, y = left
+    if x < low:
+        fall = abs(y) - low_size
+        if fall <= 0.0:
+            return False
+        steepest = fall / (low - x)
+    x, y = right
+    if x > high:
+        fall = abs(y) - high_size
+        if fall <= 0.0:
+            return False
+        slope = fall / (x - high)
+        if slope > steepest:
+            steepest = slope
+    return (low_size + high_size) / width <= STEEPER * steepest < math.inf
+
+
 def examine(
     f: Evaluate,
     crossing: Crossing,
@@ -98,16 +127,14 @@ def examine(
     `ends` are the ends of the whole bracket with their residuals, `samples` what was tried
     between them.
     """
-    low, high, f_low, f_high = crossing
+    low, high = crossing.low, crossing.high
     if low == high:
         return Nature.ROOT, 0
     left, right = _neighbours(low, high, ends, samples)
-    scale = high if high > -low else -low
-    fine = COARSE * scale
-    if tolerance.absolute + tolerance.relative * scale <= fine and _shrinks(crossing, left, right):
+    if evident(crossing, left, right):
         return Nature.ROOT, 0
     look = _CloserLook(f, crossing, left, right)
-    nature = look.by_chords(fine) or look.by_halving()
+    nature = look.by_chords(COARSE * max(abs(low), abs(high))) or look.by_halving()
     if nature is Nature.JUMP:
         largest = max(abs(y) for _, y in (*ends, *samples) if math.isfinite(y))
         span = ends[1][0] - ends[0][0]
@@ -118,40 +145,15 @@ def examine(
 def _neighbours(
     low: float, high: float, ends: tuple[Point, Point], samples: Sequence[Point]
 ) -> tuple[Point, Point]:
-    """The nearest samples outside the interval; the latest lie nearest, for brackets are nested."""
-    (left, right), missing = ends, 2
-    needs_left, needs_right = left[0] < low, high < right[0]
-    for sample in reversed(samples):
+    """The nearest samples outside the interval."""
+    left, right = ends
+    for sample in samples:
         x = sample[0]
-        if x < low:
-            if needs_left and left[0] < x:
-                left, needs_left = sample, False
-        elif x > high and needs_right and x < right[0]:
-            right, needs_right = sample, False
-        missing = needs_left + needs_right
-        if not missing:
-            break
+        if left[0] < x < low:
+            left = sample
+        elif high < x < right[0]:
+            right = sample
     return left, right
-
-
-def _shrinks(crossing: Crossing, left: Point, right: Point) -> bool:
-    """Whether the nearest samples on both sides show the residual falling steadily to zero."""
-    low, high, f_low, f_high = crossing
-    left_size, right_size = abs(f_low), abs(f_high)
-    steepest = 0.0
-    if left[0] < low:
-        fall = abs(left[1]) - left_size
-        if fall <= 0.0:
-            return False
-        steepest = fall / (low - left[0])
-    if right[0] > high:
-        fall = abs(right[1]) - right_size
-        if fall <= 0.0:
-            return False
-        slope = fall / (right[0] - high)
-        if slope > steepest:
-            steepest = slope
-    return (left_size + right_size) / (high - low) <= STEEPER * steepest < math.inf
 
 
 class _CloserLook:
@@ -196,8 +198,7 @@ class _CloserLook:
             found = self._take(x)
             if found is not None:
                 return found
-            width = self.crossing.high - self.crossing.low
-            if width <= fine and _shrinks(self.crossing, self.left, self.right):
+            if evident(self.crossing, self.left, self.right):
                 return Nature.ROOT
         return None
 

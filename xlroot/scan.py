@@ -20,6 +20,9 @@ from xlroot.values import Fault
 TOUCHES = 1e-7
 """A minimum of the magnitude below this part of the largest residual counts as touching zero."""
 
+FINE = 1e-6
+"""A sign change is looked at down to this part of the spacing of trial values."""
+
 Many = Callable[[Sequence[float]], Sequence["float | Fault"]]
 
 
@@ -136,6 +139,7 @@ def _flats(samples: Sequence[tuple[float, float | Fault]]) -> list[Feature]:
 
 _KINDS = {
     Nature.ROOT: FeatureKind.CROSSING,
+    Nature.ROUNDING: FeatureKind.CROSSING,
     Nature.POLE: FeatureKind.POLE,
     Nature.JUMP: FeatureKind.JUMP,
     Nature.FAULT: FeatureKind.POLE,
@@ -153,7 +157,7 @@ def _signs(
             continue
         crossing = Crossing(x0, x1, y0, y1)
         ends = ((x0, largest), (x1, largest))
-        nature, _ = examine(one, crossing, ends, (), Tolerance(x1 - x0))
+        nature, _ = examine(one, crossing, ends, (), Tolerance(FINE * (x1 - x0)))
         found.append(Feature(_KINDS[nature], *_narrowed(one, x0, x1, y0)))
     return found
 

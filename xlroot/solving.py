@@ -113,10 +113,7 @@ def prepare(desk: Desk, residual: Cell, unknown: Cell, *, recalculate: bool = Fa
     if recalculate:
         warnings.append("No saved value of a formula was used: all were computed by xlroot.")
     else:
-        own = program if desk.saved is desk.present else Program(chain, desk.saved)
-        present = desk.book.saved(unknown)
-        assert not isinstance(present, Unsaved)
-        checked = baseline.check(own, present)
+        checked = _held_against_host(desk, program)
         if checked.difference is not None:
             refusal = Unsupported(str(checked.difference), str(checked.difference.cell))
         elif checked.unsaved:
@@ -130,6 +127,22 @@ def prepare(desk: Desk, residual: Cell, unknown: Cell, *, recalculate: bool = Fa
             f"Held cells lie in a circular reference ({named}); their saved values are used."
         )
     return Prepared(program, tuple(warnings), refusal)
+
+
+def _held_against_host(desk: Desk, program: Program) -> baseline.Baseline:
+    """The baseline check, on what the host saved alone.
+
+    A held root that was never saved leaves the host's own values unknown: then no cell counts as
+    checked.
+    """
+    present = desk.book.saved(program.chain.unknown)
+    assert not isinstance(present, Unsaved)
+    if desk.saved is desk.present:
+        return baseline.check(program, present)
+    try:
+        return baseline.check(Program(program.chain, desk.saved), present)
+    except Unsupported:
+        return baseline.Baseline(None, len(program.chain.steps))
 
 
 def solve(desk: Desk, question: Question, *, cell: Cell | None = None) -> Record:

@@ -46,6 +46,15 @@ def _ended_well(run: Run) -> Verdict:
     assert root is not None
     if run.nature in (Nature.POLE, Nature.JUMP, Nature.FAULT):
         return Verdict(Status.REFUSED, None, None, _no_root(run))
+    if run.nature is Nature.ROUNDING:
+        return Verdict(
+            Status.CONVERGED,
+            None,
+            None,
+            f"the residual changes sign near {root:.12g}, but is no larger there than its own "
+            "rounding: the root may lie further away than the tolerance, and the error is an "
+            "estimate",
+        )
     if run.outcome is Outcome.EXACT and run.method.family is Family.BRACKETING:
         return Verdict(
             Status.BRACKETED,

@@ -7,22 +7,18 @@ import math
 import mpmath
 import numpy_financial
 import pytest
-from hypothesis import given
+from hypothesis import assume, given
 from hypothesis import strategies as st
 
-from xlroot.functions import find
-from xlroot.functions.entry import Entry
+from xlroot.functions import annuity
+from xlroot.functions.entry import entries_of
 from xlroot.values import Fault, Operand
 
-
-def entry(name: str) -> Entry:
-    found = find(name)
-    assert found is not None
-    return found
+ENTRIES = {entry.name: entry for entry in entries_of(annuity)}
 
 
 def call(name: str, *arguments: float) -> Operand:
-    return entry(name).rule(*(float(each) for each in arguments))
+    return ENTRIES[name].rule(*(float(each) for each in arguments))
 
 
 def number(name: str, *arguments: float) -> float:
@@ -57,7 +53,9 @@ DOCUMENTED = [
 
 
 @pytest.mark.parametrize(("name", "arguments", "expected", "within"), DOCUMENTED)
-def test_documented(name: str, arguments: tuple[float, ...], expected: float, within: float) -> None:
+def test_documented(
+    name: str, arguments: tuple[float, ...], expected: float, within: float
+) -> None:
     assert number(name, *arguments) == pytest.approx(expected, abs=within, rel=0)
 
 
@@ -121,6 +119,7 @@ def test_present_and_future_value_undo_each_other(
 
 @given(st.floats(1e-4, 0.2), st.floats(1.0, 300.0), st.floats(100.0, 1e6), DUE)
 def test_periods_undo_payment(rate: float, periods: float, pv: float, due: float) -> None:
+    assume((1.0 + rate) ** periods < 1e8)
     level = number("PMT", rate, periods, pv, 0.0, due)
     # Near the perpetuity the number of periods is ill conditioned by (1 + rate)^periods.
     within = 1e-12 * max(1.0, (1.0 + rate) ** periods / (rate * periods))

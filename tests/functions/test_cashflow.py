@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 
 import numpy_financial
 import pytest
@@ -120,11 +121,12 @@ def test_dated_flows_that_do_not_fit() -> None:
     assert xnpv.rule(0.1, flows(-5, 7), column(39448.0, "soon")) is Fault.VALUE
     assert xnpv.rule(0.1, flows(-5, 7), column(39448.0, Fault.NA)) is Fault.NA
     assert xirr.rule(flows(5, 7), flows(39448, 39500)) is Fault.NUM
-    for refused in (
+    refusals: list[Callable[[], object]] = [
         lambda: xnpv.rule(-0.1, DATED, DATES),
         lambda: xnpv.rule(0.1, flows(-5, 7), column(39448.0, None)),
         lambda: xirr.rule(flows(0, -5, 7), flows(1000, 1001, 1002)),
         lambda: npv.rule(0.1, "5"),
-    ):
+    ]
+    for refused in refusals:
         with pytest.raises(Unsupported):
             refused()

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 
 import pytest
 from hypothesis import given
@@ -74,7 +75,9 @@ def test_published_by_openformula() -> None:
     assert ddb.rule(1100.0, 100.0, 5.0, 5.0, 2.3) == 0.0
     assert vdb.rule(10000.0, 600.0, 10.0, 0.0, 0.875, 1.5) == pytest.approx(1312.5)
     # From 2004-02-01, first period to 2004-12-31.
-    wear = [amorlinc.rule(1000.0, 38018.0, 38352.0, 10.0, float(n), 0.1, 1.0) for n in (0, 8, 9, 10)]
+    wear = [
+        amorlinc.rule(1000.0, 38018.0, 38352.0, 10.0, float(n), 0.1, 1.0) for n in (0, 8, 9, 10)
+    ]
     assert wear == pytest.approx([91.256831, 100.0, 98.743169, 0.0], abs=1e-6)
 
 
@@ -112,11 +115,12 @@ def test_what_cannot_be() -> None:
     assert db.rule(4000.0, 500.0, 4.0, 2.0, 13.0) is Fault.NUM
     assert vdb.rule(100.0, 10.0, 5.0, 3.0, 2.0) is Fault.NUM
     assert vdb.rule(100.0, 10.0, 5.0, 3.0, 6.0) is Fault.NUM
-    for refused in (
+    refusals: list[Callable[[], object]] = [
         lambda: ddb.rule(100.0, 200.0, 5.0, 1.0),
         lambda: ddb.rule(100.0, 10.0, 5.0, 1.5),
         lambda: db.rule(100.0, 10.0, 4.5, 1.0),
         lambda: vdb.rule(100.0, 10.0, 2e6, 0.0, 1e6),
-    ):
+    ]
+    for refused in refusals:
         with pytest.raises(Unsupported):
             refused()

@@ -26,8 +26,15 @@ SMALL = 1e-3
 """Below this product of rate and periods the annuity's slope is taken from its series."""
 
 
+def compound(rate: float, periods: float) -> float:
+    """(1 + rate)^periods; may raise ArithmeticError or ValueError."""
+    if rate > -1.0:
+        return math.exp(periods * math.log1p(rate))
+    return power(1.0 + rate, periods)
+
+
 def growth(rate: float, periods: float) -> float:
-    """(1 + rate)^periods - 1; may raise ArithmeticError or ValueError."""
+    """(1 + rate)^periods - 1, accurate near 0; may raise ArithmeticError or ValueError."""
     if rate > -1.0:
         return math.expm1(periods * math.log1p(rate))
     return power(1.0 + rate, periods) - 1.0
@@ -45,12 +52,12 @@ def weight(rate: float, due: float) -> float:
 
 def payment(rate: float, periods: float, pv: float, fv: float, due: float) -> float:
     """The level payment; may raise ArithmeticError or ValueError."""
-    return -(pv * (growth(rate, periods) + 1.0) + fv) / (weight(rate, due) * amount(rate, periods))
+    return -(pv * compound(rate, periods) + fv) / (weight(rate, due) * amount(rate, periods))
 
 
 def value_after(rate: float, periods: float, pmt: float, pv: float, due: float) -> float:
     """The future value; may raise ArithmeticError or ValueError."""
-    grown = pv * (growth(rate, periods) + 1.0)
+    grown = pv * compound(rate, periods)
     return -(grown + pmt * weight(rate, due) * amount(rate, periods))
 
 
@@ -70,9 +77,7 @@ _N = Takes.NUMBER
 def pv(rate: float, periods: float, pmt: float, fv: float = 0.0, due: float = 0.0) -> float | Fault:
     """What the payments and the future value are worth now."""
     return guarded(
-        lambda: (
-            -(fv + pmt * weight(rate, due) * amount(rate, periods)) / (growth(rate, periods) + 1.0)
-        )
+        lambda: -(fv + pmt * weight(rate, due) * amount(rate, periods)) / compound(rate, periods)
     )
 
 

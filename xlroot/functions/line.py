@@ -7,6 +7,7 @@ each function; OpenFormula section 6.18.
 
 from __future__ import annotations
 
+import math
 from typing import NamedTuple
 
 from xlroot.functions._leastsquares import dot, mean
@@ -24,6 +25,8 @@ class Scatter(NamedTuple):
     xx: float
     xy: float
     yy: float
+    left: float
+    """The sum of squares of y about the line; NaN where x does not vary."""
 
 
 def scatter(ys: Operand, xs: Operand) -> Scatter | Fault:
@@ -45,8 +48,10 @@ def scatter(ys: Operand, xs: Operand) -> Scatter | Fault:
     try:
         x0, y0 = mean([x for x, _ in pairs]), mean([y for _, y in pairs])
         dx, dy = [x - x0 for x, _ in pairs], [y - y0 for _, y in pairs]
-        return Scatter(len(pairs), x0, y0, dot(dx, dx), dot(dx, dy), dot(dy, dy))
-    except (OverflowError, ValueError):
+        xx, xy = dot(dx, dx), dot(dx, dy)
+        off = [v - xy / xx * u for u, v in zip(dx, dy, strict=True)] if xx else [math.nan]
+        return Scatter(len(pairs), x0, y0, xx, xy, dot(dy, dy), dot(off, off))
+    except (ArithmeticError, ValueError):
         return Fault.NUM
 
 
@@ -96,5 +101,4 @@ def steyx(ys: Operand, xs: Operand) -> float | Fault:
         return data
     if data.pairs < 3 or not data.xx:
         return Fault.DIV0
-    left = max(data.yy - data.xy / data.xx * data.xy, 0.0)
-    return finite((left / (data.pairs - 2)) ** 0.5)
+    return finite(math.sqrt(data.left / (data.pairs - 2)))

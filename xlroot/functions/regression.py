@@ -120,7 +120,7 @@ def _fit(data: Data, *, constant: bool) -> Fit | Fault:
             "the data do not determine the fit: too few observations, or one variable depends "
             "on the others"
         ) from None
-    except (OverflowError, ValueError):
+    except (ArithmeticError, ValueError):
         return Fault.NUM
 
 

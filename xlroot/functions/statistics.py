@@ -1,265 +1,203 @@
-"""Means, spreads, ranks and percentiles. OpenFormula (OASIS ODF 1.3 part 4), section 6.18.
+"""Means, spread and shape of a sample.
 
-In a range texts, logicals and blanks do not count (see `totals`). Variances are computed in two
-passes, mean first.
+Excel's documentation of each function; OpenFormula (OASIS ODF 1.3 part 4), section 6.18. Which
+values count is told in `xlroot.functions.totals`. Sums are rounded once (Shewchuk's method, the
+standard library's fsum) and deviations are taken from the mean, so that large values with a small
+spread keep their digits; hosts may carry fewer.
 """
 
 from __future__ import annotations
 
 import math
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
+from fractions import Fraction
 
-from xlroot.functions.entry import Entry, Gives, Takes, by_form, worksheet
-from xlroot.functions.totals import added, all_numbers, finite, numbers
+from xlroot.functions._settled import settled
+from xlroot.functions.entry import Entry, Gives, Takes, worksheet
+from xlroot.functions.totals import all_numbers, numbers
 from xlroot.values import Fault, Operand
 
-FISHER = by_form("FISHER", "atanh({0})")
-FISHERINV = by_form("FISHERINV", "tanh({0})")
+Reading = Callable[[tuple[Operand, ...]], "list[float] | Fault"]
 
 
-def mean(values: list[float]) -> float:
-    """The mean."""
-    return added(values) / len(values)
+def mean_of(sample: Sequence[float]) -> float:
+    """The mean of at least one number."""
+    return math.fsum(sample) / len(sample)
 
 
-def squares(values: list[float]) -> float:
+def deviations(sample: Sequence[float]) -> list[float]:
+    """Differences from the mean; exactly 0 where all numbers are equal."""
+    if min(sample) == max(sample):
+        return [0.0] * len(sample)
+    mean = mean_of(sample)
+    return [x - mean for x in sample]
+
+
+def square_sum(sample: Sequence[float]) -> float:
+    """The sum of squared deviations, corrected for the rounding of the mean."""
+    found = deviations(sample)
+    residue = math.fsum(found)
+    return math.fsum(d * d for d in found) - residue * residue / len(found)
+
+
+def variance(sample: Sequence[float], lost: int) -> float | Fault:
+    """Squared deviations over the count less `lost`; #DIV/0! where that is not positive."""
+    rest = len(sample) - lost
+    return square_sum(sample) / rest if rest > 0 else Fault.DIV0
+
+
+def _spread(name: str | tuple[str, ...], reading: Reading, lost: int, meaning: str) -> Entry:
+    def rule(*operands: Operand) -> float | Fault:
+        sample = reading(operands)
+        return sample if isinstance(sample, Fault) else variance(sample, lost)
+
+    rule.__doc__ = meaning
+    return worksheet(name, Takes.RAW, repeats=1, gives=Gives.NUMBER)(settled(rule))
+
+
+def _root_spread(name: str | tuple[str, ...], reading: Reading, lost: int, meaning: str) -> Entry:
+    def rule(*operands: Operand) -> float | Fault:
+        sample = reading(operands)
+        if isinstance(sample, Fault):
+            return sample
+        squared = variance(sample, lost)
+        return squared if isinstance(squared, Fault) else math.sqrt(squared)
+
+    rule.__doc__ = meaning
+    return worksheet(name, Takes.RAW, repeats=1, gives=Gives.NUMBER)(settled(rule))
+
+
+VAR = _spread(("VAR.S", "VAR"), numbers, 1, "The variance, from a sample.")
+VARP = _spread(("VAR.P", "VARP"), numbers, 0, "The variance of a whole population.")
+VARA = _spread("VARA", all_numbers, 1, "VAR with texts as 0 and logicals as 0 and 1.")
+VARPA = _spread("VARPA", all_numbers, 0, "VARP with texts as 0 and logicals as 0 and 1.")
+STDEV = _root_spread(("STDEV.S", "STDEV"), numbers, 1, "The standard deviation, from a sample.")
+STDEVP = _root_spread(("STDEV.P", "STDEVP"), numbers, 0, "The deviation of a whole population.")
+STDEVA = _root_spread("STDEVA", all_numbers, 1, "STDEV with texts as 0, logicals as 0 and 1.")
+STDEVPA = _root_spread("STDEVPA", all_numbers, 0, "STDEVP with texts as 0, logicals as 0 and 1.")
+
+
+@worksheet("DEVSQ", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def devsq(*operands: Operand) -> float | Fault:
     """The sum of squared deviations from the mean."""
-    middle = mean(values)
-    return added((value - middle) ** 2 for value in values)
+    sample = numbers(operands)
+    if isinstance(sample, Fault):
+        return sample
+    return square_sum(sample) if sample else Fault.NUM
 
 
-def _spread(
-    names: str | tuple[str, ...],
-    least: int,
-    measure: Callable[[list[float]], float],
-    read: Callable[[tuple[Operand, ...]], list[float] | Fault] = numbers,
-) -> Entry:
-    """A measure over all numbers; #DIV/0! for fewer than `least`."""
-
-    @worksheet(names, Takes.RAW, repeats=1, gives=Gives.NUMBER)
-    def rule(*operands: Operand) -> float | Fault:
-        found = read(operands)
-        if isinstance(found, Fault):
-            return found
-        if len(found) < least:
-            return Fault.DIV0
-        try:
-            return finite(measure(found))
-        except ZeroDivisionError:
-            return Fault.DIV0
-        except (OverflowError, ValueError):
-            return Fault.NUM
-
-    return rule
+@worksheet("AVEDEV", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def avedev(*operands: Operand) -> float | Fault:
+    """The mean distance from the mean."""
+    sample = numbers(operands)
+    if isinstance(sample, Fault):
+        return sample
+    return mean_of([abs(d) for d in deviations(sample)]) if sample else Fault.NUM
 
 
-def _sample(values: list[float]) -> float:
-    return squares(values) / (len(values) - 1)
-
-
-def _population(values: list[float]) -> float:
-    return squares(values) / len(values)
-
-
-def _skew(values: list[float]) -> float:
-    n, middle, spread = len(values), mean(values), math.sqrt(_sample(values))
-    cubes = added(((value - middle) / spread) ** 3 for value in values)
-    return cubes * n / ((n - 1) * (n - 2))
-
-
-def _skew_population(values: list[float]) -> float:
-    middle, spread = mean(values), math.sqrt(_population(values))
-    return added(((value - middle) / spread) ** 3 for value in values) / len(values)
-
-
-def _kurtosis(values: list[float]) -> float:
-    n, middle, spread = len(values), mean(values), math.sqrt(_sample(values))
-    fourths = added(((value - middle) / spread) ** 4 for value in values)
-    first = fourths * n * (n + 1) / ((n - 1) * (n - 2) * (n - 3))
-    return first - 3 * (n - 1) ** 2 / ((n - 2) * (n - 3))
-
-
-VAR = _spread(("VAR", "VAR.S"), 2, _sample)
-VARP = _spread(("VARP", "VAR.P"), 1, _population)
-VARA = _spread("VARA", 2, _sample, all_numbers)
-VARPA = _spread("VARPA", 1, _population, all_numbers)
-STDEV = _spread(("STDEV", "STDEV.S"), 2, lambda values: math.sqrt(_sample(values)))
-STDEVP = _spread(("STDEVP", "STDEV.P"), 1, lambda values: math.sqrt(_population(values)))
-STDEVA = _spread("STDEVA", 2, lambda values: math.sqrt(_sample(values)), all_numbers)
-STDEVPA = _spread("STDEVPA", 1, lambda values: math.sqrt(_population(values)), all_numbers)
-SKEW = _spread("SKEW", 3, _skew)
-SKEWP = _spread(("SKEW.P", "SKEWP"), 3, _skew_population)
-KURT = _spread("KURT", 4, _kurtosis)
-
-
-def _over(names: str | tuple[str, ...], measure: Callable[[list[float]], float | Fault]) -> Entry:
-    """A measure over all numbers; #NUM! for none."""
-
-    @worksheet(names, Takes.RAW, repeats=1, gives=Gives.NUMBER)
-    def rule(*operands: Operand) -> float | Fault:
-        found = numbers(operands)
-        if isinstance(found, Fault):
-            return found
-        return measure(found) if found else Fault.NUM
-
-    return rule
-
-
-def median_of(values: list[float]) -> float:
-    """The middle of the sorted values."""
-    ordered, half = sorted(values), len(values) // 2
-    return ordered[half] if len(values) % 2 else (ordered[half - 1] + ordered[half]) / 2.0
-
-
-def _mode(values: list[float]) -> float | Fault:
-    counts = {value: values.count(value) for value in dict.fromkeys(values)}
-    best = max(counts, key=lambda value: counts[value])
-    return best if counts[best] > 1 else Fault.NA
-
-
-def _geometric(values: list[float]) -> float | Fault:
-    if min(values) <= 0.0:
+@worksheet("GEOMEAN", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def geomean(*operands: Operand) -> float | Fault:
+    """The nth root of the product of n positive numbers."""
+    sample = numbers(operands)
+    if isinstance(sample, Fault):
+        return sample
+    if not sample or min(sample) <= 0.0:
         return Fault.NUM
-    return math.exp(added(map(math.log, values)) / len(values))
+    # Fractions and exponents of two apart: neither overflows nor loses digits in logarithms.
+    product, twos = 1.0, 0
+    for x in sample:
+        fraction, exponent = math.frexp(x)
+        product, shift = math.frexp(product * fraction)
+        twos += exponent + shift
+    whole, rest = divmod(twos, len(sample))
+    root = math.pow(product, 1.0 / len(sample)) * math.pow(2.0, rest / len(sample))
+    return math.ldexp(root, whole)
 
 
-def _harmonic(values: list[float]) -> float | Fault:
-    if min(values) <= 0.0:
+@worksheet("HARMEAN", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def harmean(*operands: Operand) -> float | Fault:
+    """The reciprocal of the mean reciprocal of positive numbers."""
+    sample = numbers(operands)
+    if isinstance(sample, Fault):
+        return sample
+    if not sample or min(sample) <= 0.0:
         return Fault.NUM
-    return len(values) / added(1.0 / value for value in values)
-
-
-MEDIAN = _over("MEDIAN", median_of)
-MODE = _over(("MODE", "MODE.SNGL"), _mode)
-GEOMEAN = _over("GEOMEAN", _geometric)
-HARMEAN = _over("HARMEAN", _harmonic)
-DEVSQ = _over("DEVSQ", squares)
-AVEDEV = _over("AVEDEV", lambda values: mean([abs(each - mean(values)) for each in values]))
-
-
-@worksheet("LARGE", Takes.RAW, Takes.NUMBER, gives=Gives.NUMBER)
-def large(operand: Operand, rank: float) -> float | Fault:
-    """The k-th largest number."""
-    return _ordered(operand, rank, descending=True)
-
-
-@worksheet("SMALL", Takes.RAW, Takes.NUMBER, gives=Gives.NUMBER)
-def small(operand: Operand, rank: float) -> float | Fault:
-    """The k-th smallest number."""
-    return _ordered(operand, rank, descending=False)
-
-
-def _ordered(operand: Operand, rank: float, *, descending: bool) -> float | Fault:
-    found = numbers((operand,))
-    if isinstance(found, Fault):
-        return found
-    place = math.ceil(rank) if descending else math.floor(rank)
-    if not 1 <= place <= len(found):
-        return Fault.NUM
-    return sorted(found, reverse=descending)[place - 1]
-
-
-def _rank(value: float, operand: Operand, order: float, *, share: float) -> float | Fault:
-    found = numbers((operand,))
-    if isinstance(found, Fault):
-        return found
-    if value not in found:
-        return Fault.NA
-    before = sum((each < value) if order else (each > value) for each in found)
-    return before + 1.0 + share * (found.count(value) - 1)
-
-
-@worksheet(
-    ("RANK", "RANK.EQ"), Takes.NUMBER, Takes.RAW, Takes.NUMBER, optional=1, gives=Gives.NUMBER
-)
-def rank(value: float, operand: Operand, order: float = 0.0) -> float | Fault:
-    """The rank among numbers, the largest first unless told otherwise; equals share the best."""
-    return _rank(value, operand, order, share=0.0)
-
-
-@worksheet("RANK.AVG", Takes.NUMBER, Takes.RAW, Takes.NUMBER, optional=1, gives=Gives.NUMBER)
-def rank_avg(value: float, operand: Operand, order: float = 0.0) -> float | Fault:
-    """The rank among numbers; equals share the mean."""
-    return _rank(value, operand, order, share=0.5)
-
-
-def _at(ordered: list[float], place: float) -> float:
-    """The value at a place counted from 0, interpolated."""
-    low = math.floor(place)
-    part = place - low
-    return ordered[low] + (part * (ordered[low + 1] - ordered[low]) if part else 0.0)
-
-
-def percentile_of(values: list[float], share: float, *, inside: bool) -> float | Fault:
-    """The value below which a share lies; `inside` excludes both ends."""
-    n = len(values)
-    place = share * (n + 1) - 1.0 if inside else share * (n - 1)
-    if not n or not 0.0 <= place <= n - 1 or not 0.0 <= share <= 1.0:
-        return Fault.NUM
-    return _at(sorted(values), place)
-
-
-def _percentile(names: str | tuple[str, ...], parts: float, *, inside: bool) -> Entry:
-    @worksheet(names, Takes.RAW, Takes.NUMBER, gives=Gives.NUMBER)
-    def rule(operand: Operand, share: float) -> float | Fault:
-        found = numbers((operand,))
-        if isinstance(found, Fault):
-            return found
-        whole = share if parts == 1.0 else math.trunc(share) / parts
-        return percentile_of(found, whole, inside=inside)
-
-    return rule
-
-
-PERCENTILE = _percentile(("PERCENTILE", "PERCENTILE.INC"), 1.0, inside=False)
-PERCENTILE_EXC = _percentile("PERCENTILE.EXC", 1.0, inside=True)
-QUARTILE = _percentile(("QUARTILE", "QUARTILE.INC"), 4.0, inside=False)
-QUARTILE_EXC = _percentile("QUARTILE.EXC", 4.0, inside=True)
-
-
-def _percent_rank(names: str | tuple[str, ...], *, inside: bool) -> Entry:
-    @worksheet(names, Takes.RAW, Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER)
-    def rule(operand: Operand, value: float, digits: float = 3.0) -> float | Fault:
-        found = numbers((operand,))
-        if isinstance(found, Fault):
-            return found
-        if not found or digits < 1.0:
-            return Fault.NUM
-        ordered = sorted(found)
-        if not ordered[0] <= value <= ordered[-1]:
-            return Fault.NA
-        below = sum(each < value for each in ordered)
-        place = float(below)
-        if value not in ordered:
-            low, high = ordered[below - 1], ordered[below]
-            place = below - 1 + (value - low) / (high - low)
-        n = len(ordered)
-        if n == 1:
-            return 1.0
-        share = (place + 1.0) / (n + 1) if inside else place / (n - 1)
-        scale = 10.0 ** int(digits)
-        return math.floor(share * scale * (1.0 + 1e-15)) / scale
-
-    return rule
-
-
-PERCENTRANK = _percent_rank(("PERCENTRANK", "PERCENTRANK.INC"), inside=False)
-PERCENTRANK_EXC = _percent_rank("PERCENTRANK.EXC", inside=True)
+    return len(sample) / math.fsum(1.0 / x for x in sample)
 
 
 @worksheet("TRIMMEAN", Takes.RAW, Takes.NUMBER, gives=Gives.NUMBER)
-def trimmean(operand: Operand, share: float) -> float | Fault:
-    """The mean without a share of the values, half of it at each end."""
-    found = numbers((operand,))
+@settled
+def trimmean(operand: Operand, part: float) -> float | Fault:
+    """The mean without a part of the numbers, half of them at either end.
+
+    How many are left out is cut to an even number, with the part as its decimals are typed.
+    """
+    sample = numbers((operand,))
+    if isinstance(sample, Fault):
+        return sample
+    if not sample or not 0.0 <= part < 1.0:
+        return Fault.NUM
+    each_side = math.floor(Fraction(repr(part)) * len(sample) / 2)
+    return mean_of(sorted(sample)[each_side : len(sample) - each_side])
+
+
+def _moments(
+    operands: tuple[Operand, ...], least: int, lost: int
+) -> tuple[list[float], int] | Fault:
+    """Deviations in units of the standard deviation, and their count."""
+    sample = numbers(operands)
+    if isinstance(sample, Fault):
+        return sample
+    if len(sample) < least:
+        return Fault.DIV0
+    squared = variance(sample, lost)
+    if isinstance(squared, Fault) or squared <= 0.0:
+        return Fault.DIV0
+    scale = math.sqrt(squared)
+    return [d / scale for d in deviations(sample)], len(sample)
+
+
+@worksheet("SKEW", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def skew(*operands: Operand) -> float | Fault:
+    """The skewness, from a sample of at least three."""
+    found = _moments(operands, 3, 1)
     if isinstance(found, Fault):
         return found
-    if not found or not 0.0 <= share < 1.0:
-        return Fault.NUM
-    drop = int(len(found) * share / 2.0)
-    return mean(sorted(found)[drop : len(found) - drop])
+    scaled, n = found
+    return math.fsum(d * d * d for d in scaled) * n / ((n - 1) * (n - 2))
+
+
+@worksheet("SKEW.P", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def skew_p(*operands: Operand) -> float | Fault:
+    """The skewness of a whole population of at least three."""
+    found = _moments(operands, 3, 0)
+    if isinstance(found, Fault):
+        return found
+    scaled, n = found
+    return math.fsum(d * d * d for d in scaled) / n
+
+
+@worksheet("KURT", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@settled
+def kurt(*operands: Operand) -> float | Fault:
+    """The kurtosis beyond a normal distribution's, from a sample of at least four."""
+    found = _moments(operands, 4, 1)
+    if isinstance(found, Fault):
+        return found
+    scaled, n = found
+    fourth = math.fsum(d * d * d * d for d in scaled)
+    pairs = (n - 2) * (n - 3)
+    return n * (n + 1) / ((n - 1) * pairs) * fourth - 3.0 * (n - 1) * (n - 1) / pairs
 
 
 @worksheet("STANDARDIZE", Takes.NUMBER, Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER)
-def standardize(x: float, middle: float, spread: float) -> float | Fault:
-    """(x − mean)/standard deviation."""
-    return finite((x - middle) / spread) if spread > 0.0 else Fault.NUM
+@settled
+def standardize(x: float, mean: float, deviation: float) -> float | Fault:
+    """The distance from the mean in standard deviations."""
+    return (x - mean) / deviation if deviation > 0.0 else Fault.NUM

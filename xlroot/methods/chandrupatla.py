@@ -23,18 +23,18 @@ def trials(start: Start) -> Trials:
         width = x2 - x1
         t = 0.5
         # f2 differs in sign from f1 and from f3: of the differences only f3 - f1 can be zero.
-        d32, d31 = f3 - f2, f3 - f1
+        d21, d32, d31 = f2 - f1, f3 - f2, f3 - f1
         if d31 and width:
-            xi, phi = width / (x2 - x3), (f1 - f2) / d32
+            xi, phi = width / (x2 - x3), -d21 / d32
             if phi * phi < xi and (1.0 - phi) * (1.0 - phi) < 1.0 - xi:
-                t = (f1 / d31) * (f2 / d32) * ((x3 - x1) / width) - (f1 / (f2 - f1)) * (f3 / d32)
-            least = absolute / width if width > 0.0 else -absolute / width
-            if relative:
-                least += relative * abs((x1 if abs(f1) < abs(f2) else x2) / width)
-            if t < least:
-                t = least
-            if t > 1.0 - least:
-                t = 1.0 - least
+                t = (f1 / d31) * (f2 / d32) * ((x3 - x1) / width) - (f1 / d21) * (f3 / d32)
+                least = absolute / width if width > 0.0 else -absolute / width
+                if relative:
+                    least += relative * abs((x1 if abs(f1) < abs(f2) else x2) / width)
+                if t < least:
+                    t = least
+                if t > 1.0 - least:
+                    t = 1.0 - least
         x = x1 + t * width
 
 

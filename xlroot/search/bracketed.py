@@ -1,0 +1,179 @@
+"""The loop of a bracketing method: opposite signs kept until the bracket is within the tolerance.
+
+A method that brings only one end to the root gets help: once its steps are below the tolerance,
+the driver tries a point just beyond, so that every such search ends with opposite signs within
+the tolerance. What the sign change is (a root, a pole, a jump) is looked at afterwards.
+"""
+
+from __future__ import annotations
+
+import math
+
+from xlroot.methods import Method, Start, opposite
+from xlroot.nature import Crossing, Nature, evident, examine
+from xlroot.search.trail import Residual, Run
+from xlroot.stopping import Outcome, Tolerance
+from xlroot.values import Fault
+
+SMALL_STEP = 0.45
+"""Steps below this part of the tolerance call for a closing point: less than the half tolerance
+that methods which close the bracket themselves keep."""
+
+# Looked up once: finding an enum's member costs as much as a step of the loop.
+_ENCLOSED, _EXACT, _EXHAUSTED = Outcome.ENCLOSED, Outcome.EXACT, Outcome.EXHAUSTED
+_ROOT = Nature.ROOT
+
+
+def bracketing(
+    method: Method, f: Residual, low: float, high: float, tolerance: Tolerance, limit: int
+) -> Run:
+    """The search between two ends, or the reason why there is none: a fault at an end, a root at
+    an end, equal signs."""
+    f_low = f(low)
+    if type(f_low) is not float:
+        return _at_a_fault(method, low, high, tolerance, (), (low, f_low))
+    f_high = f(high)
+    if type(f_high) is not float:
+        return _at_a_fault(method, low, high, tolerance, ((low, f_low),), (high, f_high))
+    predicted = None if method.predict is None else method.predict(low, high, tolerance)
+    if opposite(f_low, f_high):
+        start = Start(low, high, f_low, f_high, tolerance, low)
+        return _converge(method, f, start, limit, predicted)
+    ends = ((low, f_low), (high, f_high))
+    if f_low == 0.0 or f_high == 0.0:
+        return _at_an_end(method, low, high, tolerance, ends, predicted)
+    return Run(method, low, high, tolerance, Outcome.UNBRACKETED, (), ends, predicted=predicted)
+
+
+def _at_a_fault(
+    method: Method,
+    low: float,
+    high: float,
+    tolerance: Tolerance,
+    ends: tuple[tuple[float, float], ...],
+    found: tuple[float, float | Fault],
+) -> Run:
+    end, fault = found
+    assert isinstance(fault, Fault)
+    return Run(method, low, high, tolerance, Outcome.FAULTED, (), ends, fault=(end, fault))
+
+
+def _at_an_end(
+    method: Method,
+    low: float,
+    high: float,
+    tolerance: Tolerance,
+    ends: tuple[tuple[float, float], ...],
+    predicted: int | None,
+) -> Run:
+    end = low if ends[0][1] == 0.0 else high
+    return Run(
+        method,
+        low,
+        high,
+        tolerance,
+        Outcome.EXACT,
+        (),
+        ends,
+        root=end,
+        residual=0.0,
+        enclosure=Crossing(end, end, 0.0, 0.0),
+        nature=Nature.ROOT,
+        predicted=predicted,
+    )
+
+
+def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: int | None) -> Run:
+    # The hot loop: what it costs beside f is most of a short chain's solve, so it is plain.
+    a, b, fa, fb, tolerance, _ = start
+    # The ends of the bracket, and the samples next to its present ends.
+    left, right = ends = ((a, fa), (b, fb))
+    trials = method.trials(start)
+    send = trials.send
+    low_is_negative = fa < 0.0
+    relative = tolerance.relative
+    permitted = tolerance.absolute
+    finest = math.ulp(a) if -b < a else math.ulp(b)
+    if relative or permitted < finest:
+        permitted = finest
+    small = SMALL_STEP * permitted
+    samples: list[tuple[float, float]] = []
+    keep = samples.append
+    reach, before = permitted, math.inf
+    fault: tuple[float, Fault] | None = None
+    outcome = _EXHAUSTED
+    # Where the count is known beforehand, it decides; otherwise the width of the bracket.
+    counted = predicted is not None and predicted <= limit
+    stop = -1.0 if counted else permitted
+    x = next(trials) if limit else a
+    for _ in range(predicted if counted and predicted is not None else limit):
+        y = f(x)
+        if type(y) is not float:
+            assert isinstance(y, Fault)
+            fault, outcome = (x, y), Outcome.FAULTED
+            break
+        keep((x, y))
+        if a < x < b:
+            if y < 0.0:
+                if low_is_negative:
+                    left, a, fa = (a, fa), x, y
+                else:
+                    right, b, fb = (b, fb), x, y
+            elif y == 0.0:
+                a = b = x
+                fa = fb = 0.0
+                outcome = _EXACT
+                break
+            elif low_is_negative:
+                right, b, fb = (b, fb), x, y
+            else:
+                left, a, fa = (a, fa), x, y
+            if b - a <= stop:
+                outcome = _ENCLOSED
+                break
+            if relative and b - a <= tolerance.at(a if abs(fa) < abs(fb) else b):
+                outcome = _ENCLOSED
+                break
+        if -small < x - before < small:
+            # The method's steps have ended; a point just beyond the better end closes in.
+            before = math.inf
+            x = _beyond(a, b, fa, fb, reach)
+            reach *= 4.0
+            continue
+        before = x
+        x = send(y)
+    else:
+        if counted:
+            outcome = _ENCLOSED
+    root, residual, nature, checks = None, None, None, 0
+    crossing = Crossing(a, b, fa, fb)
+    if outcome is _ENCLOSED or outcome is _EXACT:
+        if a == b or evident(crossing, left, right):
+            nature = _ROOT
+        else:
+            nature, checks = examine(f, crossing, ends, samples, tolerance)
+        root, residual = (a, fa) if abs(fa) <= abs(fb) else (b, fb)
+    return Run(
+        method,
+        start.low,
+        start.high,
+        tolerance,
+        outcome,
+        tuple(samples),
+        ends,
+        (),
+        root,
+        residual,
+        crossing,
+        nature,
+        checks,
+        0,
+        fault,
+        predicted,
+    )
+
+
+def _beyond(a: float, b: float, fa: float, fb: float, reach: float) -> float:
+    """A point a little inside the bracket from its better end."""
+    x = a + 0.9 * reach if abs(fa) <= abs(fb) else b - 0.9 * reach
+    return x if a < x < b else a + (b - a) / 2.0
