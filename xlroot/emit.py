@@ -19,6 +19,7 @@ import re
 from collections.abc import Callable
 from dataclasses import dataclass, field
 from enum import Enum
+from itertools import pairwise
 from typing import NamedTuple
 
 from xlroot import functions
@@ -28,11 +29,15 @@ from xlroot.chain import Chain
 from xlroot.formula import Area, Array, Binary, Call, Literal, Local, Node, Omitted, Unary
 from xlroot.functions.entry import Entry, Fold, Gives, Takes
 from xlroot.interpret import ARRAY_TAKERS, Mode, Scope, evaluate, single
+from xlroot.kinds import array as array_kind
 from xlroot.ledger import Ledger
 from xlroot.values import Fault, Value, to_logical, to_number
 
 LONGEST_SUM = 40
 """Sums of more terms are computed in a loop instead of being written out."""
+
+LONGEST_MATCH = 1024
+"""Lookups in longer lines are two steps."""
 
 LARGEST_GRID = 20_000
 """Ranges of more cells with chain cells among them are left to the interpreter."""
@@ -129,9 +134,12 @@ class Emitter:
     _moving: dict[Block, tuple[Cell, ...]] = field(default_factory=dict)
 
     def formula(self, node: Node, cell: Cell) -> Expr:
-        """The formula of a plain chain cell."""
+        """The formula of a plain chain cell; a reference is what its cell holds, a blank is 0."""
         self.cell = cell
-        return self.emit(node)
+        expr = self.emit(node)
+        if expr.sort is Sort.ANY and not expr.fixed and not self.dialect.vector:
+            return Expr(f"shown({expr.text})", Sort.ANY)
+        return expr
 
     def plain(self, node: Node, cell: Cell) -> Expr:
         """For a vector dialect: the formula as a vector of numbers or logicals; what is neither
@@ -207,6 +215,10 @@ class Emitter:
         name = f"{prefix}{len(self.namespace)}"
         self.namespace[name] = value
         return name
+
+    def constants(self, line: tuple[float, ...]) -> str:
+        """A new name for a line of numbers, as the dialect's kind holds one."""
+        return self.name("k", array_kind.line(line) if self.dialect.vector else line)
 
     def _emit(self, node: Node) -> Expr:
         if isinstance(node, Area):
@@ -374,8 +386,9 @@ class Emitter:
 
     def _call(self, node: Call) -> Expr:
         special = _SPECIAL.get(node.name)
-        if special is not None:
-            return special(self, node)
+        found = None if special is None else special(self, node)
+        if found is not None:
+            return found
         entry = functions.find(node.name)
         if entry is None or entry.wrong_count(len(node.arguments)):
             raise Opaque
@@ -401,7 +414,7 @@ class Emitter:
             elif isinstance(argument, (Omitted, Array)):
                 raise Opaque
             else:
-                terms.append(self.number(self.emit(argument)))
+                terms.append(self._term(argument))
         assert entry.fold is not None
         if entry.fold in (Fold.MINIMUM, Fold.MAXIMUM):
             texts = [self.kept(each) for each in terms]
@@ -415,6 +428,18 @@ class Emitter:
             return terms[0]
         packed = "".join(f"{text}, " for text in texts)
         return Expr(f"{_FOLDS[entry.fold]}(({packed}))", Sort.NUMBER, grows=True)
+
+    def _term(self, argument: Node) -> Expr:
+        """A computed argument among many numbers. It may be a reference, whose texts, logicals
+        and blanks do not count, so only a plain number is settled here."""
+        expr = self.emit(argument)
+        if expr.sort is not Sort.ANY and (expr.sort is Sort.NUMBER or not expr.fixed):
+            return self.number(expr)
+        if isinstance(argument, Literal):
+            return self.number(expr)
+        if expr.fixed or self.dialect.vector:
+            raise Opaque
+        return Expr(f"plain({expr.text})", Sort.NUMBER)
 
     def _terms(self, block: Block) -> list[Expr]:
         """The numbers of a range; texts, logicals and blanks in a range do not count."""
@@ -599,7 +624,97 @@ def _let(emitter: Emitter, node: Call) -> Expr:
     return Expr(f"({', '.join(parts)}, {body.text})[-1]", body.sort, grows=body.grows)
 
 
-_SPECIAL: dict[str, Callable[[Emitter, Call], Expr]] = {
+def _match(emitter: Emitter, node: Call) -> Expr | None:
+    """MATCH at most, in a held line of rising numbers: a bisection."""
+    if not 2 <= len(node.arguments) <= 3 or not _is_number(emitter, node.arguments[2:], 1.0):
+        return None
+    line = _held_line(emitter, node.arguments[1])
+    return None if line is None else _located(emitter, node.arguments[0], line)
+
+
+def _index(emitter: Emitter, node: Call) -> Expr | None:
+    """INDEX in a held line of numbers by one moving position."""
+    if len(node.arguments) != 2:
+        return None
+    line = _held_line(emitter, node.arguments[0], rising=False)
+    if line is None:
+        return None
+    return _picked(emitter, line, emitter.number(emitter.emit(node.arguments[1])))
+
+
+def _vlookup(emitter: Emitter, node: Call) -> Expr | None:
+    """VLOOKUP at most, in a held table of rising numbers: a bisection and a pick."""
+    if not 3 <= len(node.arguments) <= 4 or not _is_number(emitter, node.arguments[3:], 1.0):
+        return None
+    table, column = node.arguments[1], node.arguments[2]
+    if not isinstance(table, Area) or emitter.moves(column):
+        return None
+    place = to_number(emitter.constant(column))
+    block = table.block
+    if isinstance(place, Fault) or not 1 <= int(place) <= block.width:
+        return None
+    first = _held_line(emitter, Area(block._replace(right=block.left)))
+    other = block.left + int(place) - 1
+    values = _held_line(emitter, Area(block._replace(left=other, right=other)), rising=False)
+    if first is None or values is None:
+        return None
+    return _picked(emitter, values, _located(emitter, node.arguments[0], first))
+
+
+def _is_number(emitter: Emitter, nodes: tuple[Node, ...], wanted: float) -> bool:
+    """Whether an optional argument is left out or is the constant."""
+    if not nodes:
+        return True
+    if isinstance(nodes[0], Omitted) or emitter.moves(nodes[0]):
+        return False
+    return to_number(emitter.constant(nodes[0])) == wanted
+
+
+def _held_line(emitter: Emitter, node: Node, *, rising: bool = True) -> tuple[float, ...] | None:
+    """The numbers of one held row or column; None where it moves or holds anything else."""
+    if not isinstance(node, Area) or emitter.moves(node):
+        return None
+    grid = emitter.ledger.grid(node.block)
+    if grid.is_cut or (grid.width != 1 and grid.height != 1):
+        return None
+    values = tuple(grid.flat())
+    numbers = tuple(value for value in values if type(value) is float)
+    if len(numbers) != len(values):
+        return None
+    if rising and any(a > b for a, b in pairwise(numbers)):
+        return None
+    return numbers
+
+
+def _located(emitter: Emitter, wanted: Node, line: tuple[float, ...]) -> Expr | None:
+    expr = emitter.emit(wanted)
+    if expr.sort is not Sort.NUMBER:
+        return None
+    text = f"{_FOUND}{emitter.constants(line)}, {emitter.kept(expr)}))"
+    return Expr(text, Sort.NUMBER, grows=emitter.dialect.vector)
+
+
+_FOUND = "located(bisected("
+
+
+def _picked(emitter: Emitter, line: tuple[float, ...], place: Expr | None) -> Expr | None:
+    """The number at a place; straight behind a bisection it is one step, with NaN, which the
+    guards notice, where the bisection finds nothing."""
+    if place is None:
+        return None
+    if place.text.startswith(_FOUND) and place.text.endswith("))"):
+        searched = place.text[len("located(") : -1]
+        padded = (math.nan, *line, *(math.nan,) * LONGEST_MATCH)
+        if len(line) <= LONGEST_MATCH:
+            return Expr(f"{emitter.constants(padded)}[{searched}]", Sort.NUMBER, grows=True)
+    text = f"picked({emitter.constants(line)}, {emitter.kept(place)})"
+    return Expr(text, Sort.NUMBER, grows=emitter.dialect.vector)
+
+
+_SPECIAL: dict[str, Callable[[Emitter, Call], Expr | None]] = {
+    "MATCH": _match,
+    "INDEX": _index,
+    "VLOOKUP": _vlookup,
     "IF": _if,
     "IFS": _ifs,
     "AND": _all_or_any,
@@ -609,4 +724,4 @@ _SPECIAL: dict[str, Callable[[Emitter, Call], Expr]] = {
     "IFNA": _without_fault,
     "LET": _let,
 }
-"""Functions that choose, and are code rather than calls."""
+"""Functions that are code rather than calls, where their arguments permit it."""

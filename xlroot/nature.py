@@ -55,6 +55,8 @@ class Nature(Enum):
     """What lies between opposite signs."""
 
     ROOT = "root"
+    FLAT = "flat"
+    """The residual is exactly zero there and beside it: a stretch of roots."""
     ROUNDING = "rounding"
     """The residual is too small there for its sign to be trusted: an estimate of a root."""
     POLE = "pole"
@@ -84,6 +86,7 @@ class Crossing(NamedTuple):
 
 Evaluate = Callable[[float], "float | Fault"]
 Point = tuple[float, float]
+Bracket = tuple[float, float]
 
 
 def evident(crossing: Crossing, left: Point, right: Point) -> bool:
@@ -92,10 +95,17 @@ def evident(crossing: Crossing, left: Point, right: Point) -> bool:
     It is narrow beside the unknown's size, and the nearest samples on both sides, `left` and
     `right` (the ends themselves where there are none), show the residual falling steadily to it.
     """
-    low, high, f_low, f_high = crossing
+    low, high = crossing.low, crossing.high
     width = high - low
     if width > COARSE * high and width > COARSE * -low:
         return False
+    return _falls(crossing, left, right)
+
+
+def _falls(crossing: Crossing, left: Point, right: Point) -> bool:
+    """Whether the residual falls to an interval from both sides, at least half as steeply as it
+    crosses it."""
+    low, high, f_low, f_high = crossing
     low_size, high_size = abs(f_low), abs(f_high)
     steepest = 0.0
     x, y = left
@@ -112,7 +122,7 @@ def evident(crossing: Crossing, left: Point, right: Point) -> bool:
         slope = fall / (x - high)
         if slope > steepest:
             steepest = slope
-    return (low_size + high_size) / width <= STEEPER * steepest < math.inf
+    return (low_size + high_size) / (high - low) <= STEEPER * steepest < math.inf
 
 
 def examine(
@@ -129,7 +139,7 @@ def examine(
     """
     low, high = crossing.low, crossing.high
     if low == high:
-        return Nature.ROOT, 0
+        return _beside(f, low, ends, tolerance.at(low))
     left, right = _neighbours(low, high, ends, samples)
     if evident(crossing, left, right):
         return Nature.ROOT, 0
@@ -137,9 +147,17 @@ def examine(
     nature = look.by_chords(COARSE * max(abs(low), abs(high))) or look.by_halving()
     if nature is Nature.JUMP:
         largest = max(abs(y) for _, y in (*ends, *samples) if math.isfinite(y))
-        span = ends[1][0] - ends[0][0]
-        nature = look.step_or_rounding(largest, tolerance.at(low), span)
+        bracket = (ends[0][0], ends[1][0])
+        nature = look.step_or_rounding(largest, tolerance.at(low), bracket)
     return nature, look.count
+
+
+def _beside(
+    f: Evaluate, x: float, ends: tuple[Point, Point], distance: float
+) -> tuple[Nature, int]:
+    """Whether an exact zero stands alone, from one more value beside it."""
+    beside = x + distance if x + distance <= ends[1][0] else x - distance
+    return (Nature.FLAT if f(beside) == 0.0 else Nature.ROOT), 1
 
 
 def _neighbours(
@@ -193,12 +211,12 @@ class _CloserLook:
                 return found
             # The point beside the chord's zero, on the side where the sign is the other.
             x = x + beside if self.crossing.low == x else x - beside
-            if not self.crossing.low < x < self.crossing.high:
-                return None
-            found = self._take(x)
-            if found is not None:
-                return found
-            if evident(self.crossing, self.left, self.right):
+            if self.crossing.low < x < self.crossing.high:
+                found = self._take(x)
+                if found is not None:
+                    return found
+            width = self.crossing.high - self.crossing.low
+            if width <= fine and _falls(self.crossing, self.left, self.right):
                 return Nature.ROOT
         return None
 
@@ -220,29 +238,37 @@ class _CloserLook:
             return Nature.ROOT
         return Nature.POLE if factor >= GROWS else Nature.JUMP
 
-    def step_or_rounding(self, largest: float, permitted: float, span: float) -> Nature:
+    def step_or_rounding(self, largest: float, permitted: float, bracket: Bracket) -> Nature:
         """A step that stays between neighbouring doubles: small enough to be none, or rounding.
 
         Samples further and further out tell over which distance the residual is no larger than a
         few such steps. Where the tolerance spans that distance, and the step is small beside the
-        residual nearby, the unknown is as well known as was asked.
+        residual in the bracket, the unknown is as well known as was asked.
         """
-        step, near = 4.0 * self.crossing.size, 0.0
-        distance = permitted
-        while distance <= SPREAD * span:
-            outside = (self.f(self.crossing.low - distance), self.f(self.crossing.high + distance))
-            self.count += 2
-            left, right = outside
-            if isinstance(left, Fault) or isinstance(right, Fault):
+        step, distance = 4.0 * self.crossing.size, permitted
+        spread = SPREAD * (bracket[1] - bracket[0])
+        while distance == permitted or distance <= spread:
+            near = self._grown(distance, bracket)
+            if near is None:
                 return Nature.JUMP
-            if (left < 0.0) != (self.crossing.f_low < 0.0) or (right < 0.0) == (left < 0.0):
-                return Nature.JUMP if step > ROUNDING * largest else Nature.ROUNDING
-            near = min(abs(left), abs(right))
             if near >= step:
-                break
+                if distance == permitted and step <= STEP * largest:
+                    return Nature.ROOT
+                return Nature.ROUNDING if step <= ROUNDING * largest else Nature.JUMP
             distance *= 4.0
-        if near < step:
-            return Nature.JUMP
-        if distance == permitted and step <= STEP * max(largest, near):
-            return Nature.ROOT
-        return Nature.ROUNDING if step <= ROUNDING * largest else Nature.JUMP
+        return Nature.JUMP
+
+    def _grown(self, distance: float, bracket: Bracket) -> float | None:
+        """The smaller magnitude of the residual at a distance on both sides; None at a fault.
+
+        A sign that differs from the nearer one is rounding still: it counts as no growth.
+        """
+        low, high, f_low, f_high = self.crossing
+        left = self.f(max(bracket[0], low - distance))
+        right = self.f(min(bracket[1], high + distance))
+        self.count += 2
+        if isinstance(left, Fault) or isinstance(right, Fault):
+            return None
+        if (left < 0.0) != (f_low < 0.0) or (right < 0.0) != (f_high < 0.0):
+            return 0.0
+        return min(abs(left), abs(right))

@@ -9,6 +9,8 @@ computes the chain again for that trial value, so the answer is always the inter
 from __future__ import annotations
 
 import math
+import re
+from bisect import bisect_right
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -276,6 +278,7 @@ class Program:
             sorts[name] = expr.sort
         result = self.variables[self.chain.residual]
         guards = list(dict.fromkeys(emitter.guards))
+        lines = _freed(lines, keep={result, *guards})
         starting = [f"{each} = 0.0" for each in guards if each[0] in "gl"]
         ending = f"return {result}, {' + '.join([result, *guards])}"
         body = [f"    {line}" for line in (*starting, *lines, ending)]
@@ -313,10 +316,40 @@ class Program:
         return result, faults
 
 
+def _freed(lines: list[str], keep: set[str]) -> list[str]:
+    """The lines with every variable deleted after its last use: vectors that are no longer wanted
+    give their memory, still in the cache, to the next."""
+    last: dict[str, int] = {}
+    for number, line in enumerate(lines):
+        for name in _VARIABLE.findall(line):
+            last[name] = number
+    dead: dict[int, list[str]] = {}
+    for name, number in last.items():
+        if name not in keep:
+            dead.setdefault(number, []).append(name)
+    return [
+        f"{line}; del {', '.join(dead[number])}" if number in dead else line
+        for number, line in enumerate(lines)
+    ]
+
+
+_VARIABLE = re.compile(r"\bv\d+\b")
+
+
+def _single(value: object) -> object:
+    """A reference to one cell, as INDEX gives it, as what the cell holds."""
+    if isinstance(value, Grid):
+        if value.height == value.width == 1:
+            return value.rows[0][0]
+        raise NotPlain
+    return value
+
+
 def _number_of(value: object) -> float:
     if type(value) is float:
         return value
-    if value is None or isinstance(value, (bool, str)):
+    value = _single(value)
+    if value is None or isinstance(value, (float, bool, str)):
         number = to_number(value)
         if type(number) is float:
             return number
@@ -324,9 +357,8 @@ def _number_of(value: object) -> float:
 
 
 def _truth(value: object) -> bool:
-    if isinstance(value, bool):
-        return value
-    if value is None or isinstance(value, (float, str)):
+    value = _single(value)
+    if value is None or isinstance(value, (bool, float, str)):
         logical = to_logical(value)
         if isinstance(logical, bool):
             return logical
@@ -334,9 +366,8 @@ def _truth(value: object) -> bool:
 
 
 def _text_of(value: object) -> str:
-    if isinstance(value, str):
-        return value
-    if value is None or isinstance(value, (float, bool)):
+    value = _single(value)
+    if value is None or isinstance(value, (float, bool, str)):
         text = to_text(value)
         if isinstance(text, str):
             return text
@@ -344,15 +375,31 @@ def _text_of(value: object) -> str:
 
 
 def _one(value: object) -> object:
-    if isinstance(value, (Grid, Fault)):
+    value = _single(value)
+    if isinstance(value, Fault):
         raise NotPlain
     return value
 
 
-def _flat(value: object) -> object:
-    if isinstance(value, Grid):
-        raise NotPlain
-    return value
+def _shown(value: object) -> object:
+    """What a cell shows whose formula gives the value; a blank shows as 0."""
+    value = _single(value)
+    return 0.0 if value is None else value
+
+
+def _located(count: int) -> float:
+    """The position that a bisection found; none is a fault."""
+    if count:
+        return float(count)
+    raise NotPlain
+
+
+def _picked(line: tuple[float, ...], place: float) -> float:
+    """The number at a position counted from 1."""
+    position = int(place)
+    if 1 <= position <= len(line):
+        return line[position - 1]
+    raise NotPlain
 
 
 def _finite(value: float) -> float:
@@ -362,6 +409,7 @@ def _finite(value: float) -> float:
 
 
 def _plain(value: object) -> float:
+    value = _single(value)
     if type(value) is float:
         return value
     raise NotPlain
@@ -383,7 +431,11 @@ _HELPERS: dict[str, object] = {
     "truth": _truth,
     "text_of": _text_of,
     "one": _one,
-    "flat": _flat,
+    "shown": _shown,
+    "flat": _single,
+    "bisected": bisect_right,
+    "located": _located,
+    "picked": _picked,
     "finite": _finite,
     "plain": _plain,
     "fail": _fail,

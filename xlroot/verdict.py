@@ -56,16 +56,7 @@ def _ended_well(run: Run) -> Verdict:
             "estimate",
         )
     if run.outcome is Outcome.EXACT and run.method.family is Family.BRACKETING:
-        return Verdict(
-            Status.BRACKETED,
-            root,
-            root,
-            "the residual is exactly zero at the root, with opposite signs at the ends of the "
-            "bracket; other roots in the bracket are not excluded"
-            if root not in (run.low, run.high)
-            else "the residual is exactly zero at an end of the bracket; other roots in the "
-            "bracket are not excluded",
-        )
+        return Verdict(Status.BRACKETED, root, root, _exact(run))
     if crossing is not None:
         return Verdict(
             Status.BRACKETED,
@@ -82,6 +73,19 @@ def _ended_well(run: Run) -> Verdict:
         f"{run.method.name} converged inside the limits ({zero}), but the residual does not "
         "change sign around the root: the error is an estimate",
     )
+
+
+def _exact(run: Run) -> str:
+    if run.root == run.low or run.root == run.high:
+        where = "at an end of the bracket"
+    else:
+        where = "at the root, with opposite signs at the ends of the bracket"
+    if run.nature is Nature.FLAT:
+        return (
+            f"the residual is exactly zero {where}, and beside it as well: every value of that "
+            "stretch meets it"
+        )
+    return f"the residual is exactly zero {where}; other roots in the bracket are not excluded"
 
 
 def _width(width: float) -> str:
@@ -104,7 +108,8 @@ def _no_root(run: Run) -> str:
         )
     return (
         f"the residual jumps over zero {where} (from {crossing.f_low:.6g} to "
-        f"{crossing.f_high:.6g}) or is steeper there than numbers resolve: no root is shown"
+        f"{crossing.f_high:.6g}) or is steeper there than numbers resolve: no root is shown. "
+        "If rounding in the formulas makes the step, state a wider tolerance"
     )
 
 

@@ -27,7 +27,6 @@ _REASONS: dict[str, tuple[int, ...]] = {
         269,
         270,
     ),
-    "30/360 US takes the end of February as the 30th (Excel's documentation)": (348,),
     "the published value counts 89 days where 30/360 counts 90; actual/actual is refused": (
         365,
         366,
@@ -46,8 +45,6 @@ _REASONS: dict[str, tuple[int, ...]] = {
         1068,
     ),
     "a date whose order depends on the reader's country: refused": (
-        695,
-        696,
         700,
         701,
     ),
@@ -205,7 +202,6 @@ NOT_ENTERED = frozenset(
         "HEX2BIN",
         "HEX2DEC",
         "HEX2OCT",
-        "HYPERLINK",
         "IMABS",
         "IMAGINARY",
         "IMARGUMENT",

@@ -1,394 +1,161 @@
-"""Dates and times as serial numbers of the 1900 system.
+"""Dates and times: making them, taking them apart, moving them by months.
 
-Serial 1 is 1 January 1900; the system counts a 29 February 1900 (serial 60) that never was, as
-Excel does. OpenFormula (OASIS ODF 1.3 part 4), section 6.10; day counts after its section 4.11.7.
+OpenFormula (OASIS ODF 1.3 part 4), section 6.10. Numbers are serials of the 1900 system
+(`xlroot.functions.serials`). DATE takes a year below 1900 as counted from 1900, as Excel does;
+LibreOffice takes 100 to 1899 as they are.
 """
 
 from __future__ import annotations
 
 import math
-from calendar import isleap, monthrange
-from datetime import date, datetime, timedelta
+from calendar import monthrange
+from datetime import date, datetime
 
-from xlroot.functions.entry import Entry, Gives, Takes, Trait, worksheet
-from xlroot.texts import FIRST_SERIAL, read_date, read_time, serial_of
-from xlroot.values import Fault, Grid, Operand, to_number
+from xlroot.errors import Unsupported
+from xlroot.functions.entry import Entry, Gives, Takes, worksheet
+from xlroot.functions.serials import (
+    CALENDAR,
+    CHANGING,
+    FIRST_SURE,
+    LAST_SERIAL,
+    NEVER,
+    day_of,
+    moved,
+    serial,
+    sure_day,
+    sure_serial,
+)
+from xlroot.texts import FIRST_SERIAL, read_date, read_time
+from xlroot.values import Fault
 
-CALENDAR = frozenset((Trait.CALENDAR,))
-CHANGING = frozenset((Trait.CALENDAR, Trait.VOLATILE))
-LAST_SERIAL = 2_958_465.0
-"""31 December 9999."""
+SNAP = 5e-4
+"""Seconds: a time this near to a whole second is that second, written as a fraction of a day."""
 
-
-def day_of(serial: float) -> date | Fault:
-    """The calendar date of a serial; #NUM! outside the calendar, and for the day that never was."""
-    whole = math.floor(serial)
-    if not 1 <= whole <= LAST_SERIAL or whole == 60:
-        return Fault.NUM
-    return FIRST_SERIAL + timedelta(days=whole + (whole < 60))
-
-
-def serial(day: date) -> float:
-    """The serial of a calendar date from 1900 on."""
-    found = serial_of(day.year, day.month, day.day)
-    assert isinstance(found, float)
-    return found
+LARGEST_TIME_PART = 32_768.0
 
 
 @worksheet("DATE", Takes.NUMBER, Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def date_(year: float, month: float, day: float) -> float | Fault:
-    """The serial of a year, month and day; months and days may run over."""
-    years, months, days = math.floor(year), math.floor(month), math.floor(day)
-    if 0 <= years < 1900:
-        years += 1900
-    if not 0 <= years <= 9999 or abs(months) > 200_000 or abs(days) > 4_000_000:
+    """The serial of a year, month and day, cut to whole ones; months and days may run over."""
+    if not 0.0 <= year < 10_000.0 or abs(month) > 200_000.0 or abs(day) > 4_000_000.0:
         return Fault.NUM
-    years, months = years + (months - 1) // 12, (months - 1) % 12 + 1
+    if (month < 0.0 and month % 1.0) or (day < 0.0 and day % 1.0):
+        raise Unsupported("cuts a negative month or day to a whole one, where hosts differ")
+    years = int(year) + (1900 if year < 1900.0 else 0)
+    years, months = years + (int(month) - 1) // 12, (int(month) - 1) % 12 + 1
     if not 1899 <= years <= 9999:
         return Fault.NUM
     first = (date(years, months, 1) - FIRST_SERIAL).days
-    found = first + days - 1
-    # Days are counted on in the system that has a 29 February 1900.
-    if first < 61:
-        found -= 1
+    # Days are counted on in a system that has a 29 February 1900.
+    found = first - (first < FIRST_SURE) + int(day) - 1
     return float(found) if 0 <= found <= LAST_SERIAL else Fault.NUM
 
 
 @worksheet("TIME", Takes.NUMBER, Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def time_(hour: float, minute: float, second: float) -> float | Fault:
     """The fraction of a day, whole days dropped."""
-    seconds = math.floor(hour) * 3600 + math.floor(minute) * 60 + math.floor(second)
-    return seconds % 86400 / 86400.0 if seconds >= 0 else Fault.NUM
+    parts = (hour, minute, second)
+    if any(abs(part) >= LARGEST_TIME_PART for part in parts):
+        return Fault.NUM
+    if any(part < 0.0 and part % 1.0 for part in parts):
+        raise Unsupported("cuts a negative part of a time to a whole one, where hosts differ")
+    seconds = int(hour) * 3600 + int(minute) * 60 + int(second)
+    return seconds % 86_400 / 86_400.0 if seconds >= 0 else Fault.NUM
 
 
-def _calendar(name: str, part: str) -> Entry:
+def _calendar(name: str, part: str, zero: float, never: float) -> Entry:
     @worksheet(name, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
     def rule(number: float) -> float | Fault:
         if 0.0 <= number < 1.0:
-            # Serial 0 shows as day 0 of January 1900.
-            return {"year": 1900.0, "month": 1.0, "day": 0.0}[part]
-        if 60.0 <= number < 61.0:
-            return {"year": 1900.0, "month": 2.0, "day": 29.0}[part]
+            return zero
+        if NEVER <= number < FIRST_SURE:
+            return never
         day = day_of(number)
         return day if isinstance(day, Fault) else float(getattr(day, part))
 
     return rule
 
 
-YEAR = _calendar("YEAR", "year")
-MONTH = _calendar("MONTH", "month")
-DAY = _calendar("DAY", "day")
+YEAR = _calendar("YEAR", "year", zero=1900.0, never=1900.0)
+"""Serial 0 counts as day 0 of January 1900."""
+MONTH = _calendar("MONTH", "month", zero=1.0, never=2.0)
+DAY = _calendar("DAY", "day", zero=0.0, never=29.0)
 
 
-def _seconds(number: float) -> int | Fault:
-    if not 0.0 <= number <= LAST_SERIAL + 1.0:
+def _seconds(number: float, unit: int) -> int | Fault:
+    """The second of the day; a time that only rounding carries into the next `unit` seconds is
+    refused."""
+    if not 0.0 <= number < LAST_SERIAL + 1.0:
         return Fault.NUM
-    return math.floor(number % 1.0 * 86400.0 + 0.5) % 86400
+    exact = number % 1.0 * 86_400.0
+    whole = math.floor(exact + 0.5)
+    if unit > 1 and abs(exact - whole) > SNAP and whole // unit != math.floor(exact) // unit:
+        raise Unsupported("takes apart a time half a second before the next, where hosts differ")
+    return whole % 86_400
 
 
 @worksheet("HOUR", Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def hour(number: float) -> float | Fault:
     """The hour, 0 to 23."""
-    seconds = _seconds(number)
+    seconds = _seconds(number, 3600)
     return seconds if isinstance(seconds, Fault) else float(seconds // 3600)
 
 
 @worksheet("MINUTE", Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def minute(number: float) -> float | Fault:
     """The minute, 0 to 59."""
-    seconds = _seconds(number)
+    seconds = _seconds(number, 60)
     return seconds if isinstance(seconds, Fault) else float(seconds // 60 % 60)
 
 
 @worksheet("SECOND", Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def second(number: float) -> float | Fault:
-    """The second, 0 to 59."""
-    seconds = _seconds(number)
+    """The second, 0 to 59, rounded half up."""
+    seconds = _seconds(number, 1)
     return seconds if isinstance(seconds, Fault) else float(seconds % 60)
-
-
-@worksheet("WEEKDAY", Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER, traits=CALENDAR)
-def weekday(number: float, kind: float = 1.0) -> float | Fault:
-    """The day of the week: from Sunday 1 (kind 1), Monday 1 (2), Monday 0 (3), or 11 to 17."""
-    if not 0.0 <= number <= LAST_SERIAL + 1.0:
-        return Fault.NUM
-    # Serial 1 counts as a Sunday, as the system has it.
-    sunday_based = (math.floor(number) - 1) % 7
-    form = int(kind)
-    if form == 3:
-        return float((sunday_based - 1) % 7)
-    if form in (1, 2):
-        return float((sunday_based - (form - 1)) % 7 + 1)
-    if 11 <= form <= 17:
-        return float((sunday_based - (form - 10)) % 7 + 1)
-    return Fault.NUM
-
-
-@worksheet("ISOWEEKNUM", Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
-def isoweeknum(number: float) -> float | Fault:
-    """The week of the year by ISO 8601."""
-    day = day_of(number)
-    return day if isinstance(day, Fault) else float(day.isocalendar().week)
-
-
-@worksheet("WEEKNUM", Takes.NUMBER, Takes.NUMBER, optional=1, gives=Gives.NUMBER, traits=CALENDAR)
-def weeknum(number: float, kind: float = 1.0) -> float | Fault:
-    """The week of the year; weeks begin on Sunday (1), Monday (2), others (11 to 17); 21: ISO."""
-    day, form = day_of(number), int(kind)
-    if isinstance(day, Fault):
-        return day
-    if form == 21:
-        return float(day.isocalendar().week)
-    starts = {1: 6, 2: 0, 11: 0, 12: 1, 13: 2, 14: 3, 15: 4, 16: 5, 17: 6}
-    if form not in starts:
-        return Fault.NUM
-    first = date(day.year, 1, 1)
-    offset = (first.weekday() - starts[form]) % 7
-    return float(((day - first).days + offset) // 7 + 1)
-
-
-@worksheet("DAYS", Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
-def days(end: float, start: float) -> float:
-    """Whole days between two dates."""
-    return float(math.floor(end) - math.floor(start))
-
-
-def moved(day: date, months: int) -> date | Fault:
-    """The same day some months on, or the month's last."""
-    whole = day.year * 12 + day.month - 1 + months
-    year, month = divmod(whole, 12)
-    if not 1900 <= year <= 9999:
-        return Fault.NUM
-    return date(year, month + 1, min(day.day, monthrange(year, month + 1)[1]))
 
 
 @worksheet("EDATE", Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def edate(start: float, months: float) -> float | Fault:
-    """The date some months on."""
-    day = day_of(start)
-    found = day if isinstance(day, Fault) else moved(day, math.trunc(months))
-    return found if isinstance(found, Fault) else serial(found)
+    """The date some months on, cut to whole ones."""
+    day = sure_day(start)
+    if isinstance(day, Fault) or abs(months) > 200_000.0:
+        return Fault.NUM
+    found = moved(day, int(months))
+    return found if isinstance(found, Fault) else sure_serial(found)
 
 
 @worksheet("EOMONTH", Takes.NUMBER, Takes.NUMBER, gives=Gives.NUMBER, traits=CALENDAR)
 def eomonth(start: float, months: float) -> float | Fault:
-    """The last day of the month some months on."""
-    day = day_of(start)
-    found = day if isinstance(day, Fault) else moved(day.replace(day=1), math.trunc(months))
+    """The last day of the month some months on, cut to whole ones."""
+    day = sure_day(start)
+    if isinstance(day, Fault) or abs(months) > 200_000.0:
+        return Fault.NUM
+    found = moved(day.replace(day=1), int(months))
     if isinstance(found, Fault):
         return found
-    return serial(found.replace(day=monthrange(found.year, found.month)[1]))
+    return sure_serial(found.replace(day=monthrange(found.year, found.month)[1]))
 
 
 @worksheet("DATEVALUE", Takes.TEXT, gives=Gives.NUMBER, traits=CALENDAR)
 def datevalue(text: str) -> float | Fault:
-    """The serial of a date in a text."""
+    """The serial of a date in a text, without its time."""
     found = read_date(text)
     return found if isinstance(found, Fault) else float(math.floor(found))
 
 
 @worksheet("TIMEVALUE", Takes.TEXT, gives=Gives.NUMBER, traits=CALENDAR)
 def timevalue(text: str) -> float | Fault:
-    """The fraction of a day of a time in a text."""
-    found = read_time(text)
-    if isinstance(found, Fault):
-        found = read_date(text)
-    return found if isinstance(found, Fault) else found % 1.0
-
-
-def days_360(start: date, end: date, *, european: bool = False) -> int:
-    """Days of a year of twelve months of thirty days: the US rule (NASD) or the European."""
-    first, last = start.day, end.day
-    if european:
-        first, last = min(first, 30), min(last, 30)
-    else:
-        if _month_end(start) and start.month == 2:
-            if _month_end(end) and end.month == 2:
-                last = 30
-            first = 30
-        if first == 31:
-            first = 30
-        if last == 31 and first == 30:
-            last = 30
-    return 360 * (end.year - start.year) + 30 * (end.month - start.month) + last - first
-
-
-def _month_end(day: date) -> bool:
-    return day.day == monthrange(day.year, day.month)[1]
-
-
-@worksheet(
-    "DAYS360",
-    Takes.NUMBER,
-    Takes.NUMBER,
-    Takes.LOGICAL,
-    optional=1,
-    gives=Gives.NUMBER,
-    traits=CALENDAR,
-)
-def days360(start: float, end: float, european: bool = False) -> float | Fault:  # noqa: FBT001, FBT002
-    """Days between two dates in a year of 360; February's end counts as any other day here."""
-    first, last = day_of(start), day_of(end)
-    if isinstance(first, Fault):
-        return first
-    if isinstance(last, Fault):
-        return last
-    if european:
-        return float(days_360(first, last, european=True))
-    begin, finish = first.day, last.day
-    extra = 0
-    if _month_end(first):
-        begin = 30
-    if finish == 31:
-        if begin < 30:
-            finish, extra = 1, 1
-        else:
-            finish = 30
-    months = 12 * (last.year - first.year) + last.month - first.month + extra
-    return float(30 * months + finish - begin)
-
-
-@worksheet("DATEDIF", Takes.NUMBER, Takes.NUMBER, Takes.TEXT, gives=Gives.NUMBER, traits=CALENDAR)
-def datedif(start: float, end: float, unit: str) -> float | Fault:
-    """Whole years (y), months (m), days (d), or what remains of them (ym, yd, md)."""
-    first, last = day_of(start), day_of(end)
-    if isinstance(first, Fault):
-        return first
-    if isinstance(last, Fault):
-        return last
-    if first > last:
-        return Fault.NUM
-    months = 12 * (last.year - first.year) + last.month - first.month - (last.day < first.day)
-    form = unit.casefold()
-    if form == "d":
-        return float((last - first).days)
-    if form == "m":
-        return float(months)
-    if form == "y":
-        return float(months // 12)
-    if form == "ym":
-        return float(months % 12)
-    if form in ("md", "yd"):
-        from xlroot.errors import Unsupported
-
-        raise Unsupported(f'counts remaining days ("{unit}"), where hosts differ')
-    return Fault.NUM
-
-
-@worksheet(
-    "YEARFRAC",
-    Takes.NUMBER,
-    Takes.NUMBER,
-    Takes.NUMBER,
-    optional=1,
-    gives=Gives.NUMBER,
-    traits=CALENDAR,
-)
-def yearfrac(start: float, end: float, basis: float = 0.0) -> float | Fault:
-    """The part of a year between two dates: 30/360 (0), actual/actual (1), /360 (2), /365 (3),
-    European 30/360 (4)."""
-    first, last = day_of(min(start, end)), day_of(max(start, end))
-    if isinstance(first, Fault):
-        return first
-    if isinstance(last, Fault):
-        return last
-    form = int(basis)
-    if form in (0, 4):
-        return days_360(first, last, european=form == 4) / 360.0
-    actual = float((last - first).days)
-    if form == 1:
-        return actual / _average_year(first, last)
-    return {2: actual / 360.0, 3: actual / 365.0}.get(form, Fault.NUM)
-
-
-def _average_year(first: date, last: date) -> float:
-    """The length of a year for actual/actual: within a year by its own leap day, otherwise the
-    mean of the calendar years touched."""
-    year_on = moved(first, 12)
-    if isinstance(year_on, date) and last <= year_on:
-        if first.year == last.year:
-            return 366.0 if isleap(first.year) else 365.0
-        for year in (first.year, last.year):
-            if isleap(year) and first <= date(year, 2, 29) <= last:
-                return 366.0
-        return 365.0
-    span = range(first.year, last.year + 1)
-    return sum(366.0 if isleap(year) else 365.0 for year in span) / len(span)
-
-
-def _holidays(operand: Operand | None) -> set[date] | Fault:
-    found: set[date] = set()
-    if operand is None:
-        return found
-    for value in operand.flat() if isinstance(operand, Grid) else (operand,):
-        if value is None:
-            continue
-        number = to_number(value)
-        day = number if isinstance(number, Fault) else day_of(number)
-        if isinstance(day, Fault):
-            return day
-        found.add(day)
-    return found
-
-
-@worksheet(
-    "NETWORKDAYS",
-    Takes.NUMBER,
-    Takes.NUMBER,
-    Takes.RAW,
-    optional=1,
-    gives=Gives.NUMBER,
-    traits=CALENDAR,
-)
-def networkdays(start: float, end: float, holidays: Operand | None = None) -> float | Fault:
-    """Days from Monday to Friday that are no holidays, both ends counted."""
-    first, last, free = day_of(min(start, end)), day_of(max(start, end)), _holidays(holidays)
-    if isinstance(first, Fault):
-        return first
-    if isinstance(last, Fault):
-        return last
-    if isinstance(free, Fault):
-        return free
-    span = (first + timedelta(days=each) for each in range((last - first).days + 1))
-    count = sum(day.weekday() < 5 and day not in free for day in span)
-    return float(count if start <= end else -count)
-
-
-@worksheet(
-    "WORKDAY",
-    Takes.NUMBER,
-    Takes.NUMBER,
-    Takes.RAW,
-    optional=1,
-    gives=Gives.NUMBER,
-    traits=CALENDAR,
-)
-def workday(start: float, count: float, holidays: Operand | None = None) -> float | Fault:
-    """The date some working days on."""
-    day, free = day_of(start), _holidays(holidays)
-    if isinstance(day, Fault):
-        return day
-    if isinstance(free, Fault):
-        return free
-    left = math.trunc(count)
-    if abs(left) > 1_000_000:
-        return Fault.NUM
-    step = timedelta(days=1 if left > 0 else -1)
-    while left:
-        try:
-            day += step
-        except OverflowError:
-            return Fault.NUM
-        if day.weekday() < 5 and day not in free:
-            left -= 1 if left > 0 else -1
-    return serial(day) if day.year >= 1900 else Fault.NUM
+    """The time of day in a text as a fraction of a day, without its date."""
+    return read_time(text)
 
 
 @worksheet("NOW", gives=Gives.NUMBER, traits=CHANGING)
 def now() -> float:
     """The present moment, in local time."""
     moment = datetime.now()
-    return serial(moment.date()) + (moment.hour * 3600 + moment.minute * 60 + moment.second) / 86400
+    clock = moment.hour * 3600 + moment.minute * 60 + moment.second + moment.microsecond * 1e-6
+    return serial(moment.date()) + clock / 86_400.0
 
 
 @worksheet("TODAY", gives=Gives.NUMBER, traits=CHANGING)

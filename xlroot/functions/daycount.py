@@ -14,7 +14,8 @@ from datetime import date
 from enum import Enum
 
 from xlroot.errors import Unsupported
-from xlroot.functions.dates import day_of, days_360, serial
+from xlroot.functions.intervals import thirty_american, thirty_european
+from xlroot.functions.serials import day_of, serial
 from xlroot.values import Fault
 
 FIRST_SURE = 61.0
@@ -62,8 +63,10 @@ def february_end(day: date) -> bool:
 
 def days_between(start: date, end: date, basis: Basis) -> int:
     """The days from start to end as the basis counts them."""
-    if basis is Basis.THIRTY_US or basis is Basis.THIRTY_EUROPE:
-        return days_360(start, end, european=basis is Basis.THIRTY_EUROPE)
+    if basis is Basis.THIRTY_US:
+        return thirty_american(start, end)
+    if basis is Basis.THIRTY_EUROPE:
+        return thirty_european(start, end)
     return (end - start).days
 
 

@@ -10,10 +10,14 @@ import math
 from collections.abc import Iterator
 from typing import NamedTuple
 
+from xlroot.errors import Unsupported
 from xlroot.functions._densities import binomial_mass
 from xlroot.functions._settled import settled
 from xlroot.functions.entry import Gives, Takes, worksheet
 from xlroot.values import Fault
+
+LARGEST_TOTAL = 10**9
+"""The largest population whose masses are added."""
 
 
 class _Draw(NamedTuple):
@@ -65,6 +69,8 @@ class _Draw(NamedTuple):
 
     def at_most(self) -> float:
         """The probability of at most as many as found, by adding the shorter tail."""
+        if self.total > LARGEST_TOTAL:
+            raise Unsupported(f"adds too many terms for a population above {LARGEST_TOTAL:,}")
         if self.found * self.total <= self.drawn * self.wanted:
             return _tail(self.downward())
         return 1.0 - _tail(self.upward())

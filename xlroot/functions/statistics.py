@@ -172,10 +172,10 @@ def skew(*operands: Operand) -> float | Fault:
     return math.fsum(d * d * d for d in scaled) * n / ((n - 1) * (n - 2))
 
 
-@worksheet("SKEW.P", Takes.RAW, repeats=1, gives=Gives.NUMBER)
+@worksheet(("SKEW.P", "SKEWP"), Takes.RAW, repeats=1, gives=Gives.NUMBER)
 @settled
 def skew_p(*operands: Operand) -> float | Fault:
-    """The skewness of a whole population of at least three."""
+    """The skewness of a whole population of at least three; OpenFormula writes SKEWP."""
     found = _moments(operands, 3, 0)
     if isinstance(found, Fault):
         return found

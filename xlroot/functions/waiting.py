@@ -68,7 +68,7 @@ def weibull_dist(
         return 1.0 if cumulative else 0.0
     if cumulative:
         return -math.expm1(-power)
-    return shape / x * power * math.exp(-power)
+    return shape / scale * math.pow(x / scale, shape - 1.0) * math.exp(-power)
 
 
 def _at_zero(shape: float, value: float) -> float | Fault:

@@ -82,6 +82,13 @@ def elementwise(function: Callable[..., Any], caught: tuple[type[Exception], ...
     return over
 
 
+def line(numbers: tuple[float, ...]) -> Any:
+    """A held row or column of numbers."""
+    import numpy as np
+
+    return np.asarray(numbers)
+
+
 @cache
 def helpers() -> dict[str, Callable[..., Any]]:
     """What compiled text calls besides the primitives: choices, sums, extremes."""
@@ -114,7 +121,22 @@ def helpers() -> dict[str, Callable[..., Any]]:
             result = np.maximum(result, term)
         return result
 
+    def bisected(line: Any, x: Any) -> Any:
+        return np.searchsorted(line, x, side="right")
+
+    def located(count: Any) -> Any:
+        return np.where(count > 0, count, np.nan)
+
+    def picked(line: Any, place: Any) -> Any:
+        wanted = np.trunc(place)
+        inside = (wanted >= 1.0) & (wanted <= len(line))
+        position = np.where(inside, wanted, 1.0).astype(np.intp) - 1
+        return np.where(inside, line[position], np.nan)
+
     return {
+        "bisected": bisected,
+        "located": located,
+        "picked": picked,
         "choose": np.where,
         "fail": fail,
         "total": total,

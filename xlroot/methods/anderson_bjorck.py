@@ -6,8 +6,15 @@ from xlroot.methods.method import Family, Method, Need, Start, Trials
 from xlroot.methods.regula_falsi import chord
 
 
+LEAST = 0.1
+"""The factor is not taken smaller (our safeguard; near the root it is close to 1): where the
+residual is flat at one end, a factor near 0 would throw the next chord back to the other end,
+over and over."""
+
+
 def trials(start: Start) -> Trials:
-    """The chord; after two steps on the same side the other end counts for less."""
+    """The chord; after two steps on the same side the other end counts for less: by
+    1 - f_new/f, or by half where that is not positive."""
     a, b, fa, fb = start.low, start.high, start.f_low, start.f_high
     while True:
         # b is the newer end; a the one that may stay.
@@ -17,7 +24,7 @@ def trials(start: Start) -> Trials:
             a, fa = b, fb
         else:
             factor = 1.0 - f / fb
-            fa *= factor if factor > 0.0 else 0.5
+            fa *= max(factor, LEAST) if factor > 0.0 else 0.5
         b, fb = x, f
 
 

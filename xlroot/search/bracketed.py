@@ -41,7 +41,7 @@ def bracketing(
         return _converge(method, f, start, limit, predicted)
     ends = ((low, f_low), (high, f_high))
     if f_low == 0.0 or f_high == 0.0:
-        return _at_an_end(method, low, high, tolerance, ends, predicted)
+        return _at_an_end(method, f, low, high, tolerance, ends, predicted)
     return Run(method, low, high, tolerance, Outcome.UNBRACKETED, (), ends, predicted=predicted)
 
 
@@ -60,13 +60,16 @@ def _at_a_fault(
 
 def _at_an_end(
     method: Method,
+    f: Residual,
     low: float,
     high: float,
     tolerance: Tolerance,
-    ends: tuple[tuple[float, float], ...],
+    ends: tuple[tuple[float, float], tuple[float, float]],
     predicted: int | None,
 ) -> Run:
     end = low if ends[0][1] == 0.0 else high
+    crossing = Crossing(end, end, 0.0, 0.0)
+    nature, checks = examine(f, crossing, ends, (), tolerance)
     return Run(
         method,
         low,
@@ -77,8 +80,9 @@ def _at_an_end(
         ends,
         root=end,
         residual=0.0,
-        enclosure=Crossing(end, end, 0.0, 0.0),
-        nature=Nature.ROOT,
+        enclosure=crossing,
+        nature=nature,
+        checks=checks,
         predicted=predicted,
     )
 
@@ -148,7 +152,7 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
     root, residual, nature, checks = None, None, None, 0
     crossing = Crossing(a, b, fa, fb)
     if outcome is _ENCLOSED or outcome is _EXACT:
-        if a == b or evident(crossing, left, right):
+        if a < b and evident(crossing, left, right):
             nature = _ROOT
         else:
             nature, checks = examine(f, crossing, ends, samples, tolerance)

@@ -60,7 +60,8 @@ class Run(NamedTuple):
 
     @property
     def evaluations(self) -> int:
-        return len(self.ends) + len(self.samples) + self.differences + self.checks
+        faulty = self.fault is not None
+        return len(self.ends) + len(self.samples) + self.differences + self.checks + faulty
 
     @property
     def iterates(self) -> tuple[Iterate, ...]:
