@@ -166,7 +166,7 @@ class Program:
             lines.append(f"{name} = {expr.text}")
         result = self.variables[self.chain.residual]
         if self.sorts[result] is not Sort.NUMBER:
-            lines.append(f"r = number_of({result})")
+            lines.append(f"r = outcome({result})")
             result = "r"
         guards = list(dict.fromkeys(each for each in emitter.guards if each != result))
         starting = [each for each in guards if each[0] in "gl"]
@@ -356,6 +356,13 @@ def _number_of(value: object) -> float:
     raise NotPlain
 
 
+def _outcome(value: object) -> float:
+    """The residual's number; a text is none, whatever it reads as."""
+    if isinstance(value, str):
+        raise NotPlain
+    return _number_of(value)
+
+
 def _truth(value: object) -> bool:
     value = _single(value)
     if value is None or isinstance(value, (bool, float, str)):
@@ -428,6 +435,7 @@ def _total(terms: tuple[float, ...]) -> float:
 
 _HELPERS: dict[str, object] = {
     "number_of": _number_of,
+    "outcome": _outcome,
     "truth": _truth,
     "text_of": _text_of,
     "one": _one,

@@ -123,18 +123,28 @@ def _faults(samples: Sequence[tuple[float, float | Fault]]) -> list[Feature]:
 
 
 def _flats(samples: Sequence[tuple[float, float | Fault]]) -> list[Feature]:
-    """Stretches of exact zeros; a single one is a root at a trial value."""
+    """Exact zeros at trial values: two or more together are a stretch; a single one is a
+    crossing, unless the residual has the same sign on both sides."""
     found: list[Feature] = []
-    run: list[float] = []
-    for x, value in (*samples, (samples[-1][0], Fault.NA)):
-        if value == 0.0 and isinstance(value, float):
-            run.append(x)
-            continue
-        if run:
-            kind = FeatureKind.FLAT if len(run) > 2 else FeatureKind.CROSSING
-            found.append(Feature(kind, run[0], run[-1]))
-        run = []
+    start = 0
+    while start < len(samples):
+        end = start
+        while end < len(samples) and _is_zero(samples[end][1]):
+            end += 1
+        if end - start > 1:
+            found.append(Feature(FeatureKind.FLAT, samples[start][0], samples[end - 1][0]))
+        elif end - start == 1:
+            x = samples[start][0]
+            around = [value for _, value in (*samples[start - 1 : start], *samples[end : end + 1])]
+            same = len({value > 0.0 for value in around if isinstance(value, float)}) == 1
+            touches = same and len(around) == 2
+            found.append(Feature(FeatureKind.TOUCH if touches else FeatureKind.CROSSING, x, x))
+        start = end + 1
     return found
+
+
+def _is_zero(value: float | Fault) -> bool:
+    return isinstance(value, float) and value == 0.0
 
 
 _KINDS = {

@@ -104,8 +104,6 @@ def _problem(case: dict[str, Any]) -> Problem:
     )
 
 
-PROBLEMS = {
-    case["label"]: _problem(case) for case in json.loads(FILE.read_text(encoding="utf-8"))
-}
+PROBLEMS = {case["label"]: _problem(case) for case in json.loads(FILE.read_text(encoding="utf-8"))}
 APS = [each for each in PROBLEMS.values() if each.family == "APS/TOMS748"]
 CHANDRUPATLA = [each for each in PROBLEMS.values() if each.family == "Chandrupatla"]

@@ -184,7 +184,9 @@ grid = st.integers(-512, 512).map(lambda n: n / 64.0)
 
 
 @settings(max_examples=60, deadline=None)
-@given(root=grid, others=st.tuples(grid, st.floats(0.0625, 64.0)), lead=st.sampled_from([-1.0, 1.0]))
+@given(
+    root=grid, others=st.tuples(grid, st.floats(0.0625, 64.0)), lead=st.sampled_from([-1.0, 1.0])
+)
 @bracketing
 def test_the_enclosure_of_a_cubic_holds_a_true_root(
     method: Method, root: float, others: tuple[float, float], lead: float

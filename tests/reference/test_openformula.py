@@ -45,7 +45,7 @@ def agrees(value: Value, result: str) -> bool:
     text = result.replace("“", '"').replace("”", '"').strip()
     if text in ("Error", "NA", "#N/A"):
         return isinstance(value, Fault) if text == "Error" else value is Fault.NA
-    text = {"FALSE": "False", "Ture": "True"}.get(text, text)
+    text = {"FALSE": "False", "TRUE": "True", "Ture": "True"}.get(text, text)
     if text in ("True", "False"):
         return value == (text == "True") and not isinstance(value, (str, Fault))
     if text.startswith('"'):

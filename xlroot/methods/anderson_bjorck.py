@@ -5,7 +5,6 @@ from __future__ import annotations
 from xlroot.methods.method import Family, Method, Need, Start, Trials
 from xlroot.methods.regula_falsi import chord
 
-
 LEAST = 0.1
 """The factor is not taken smaller (our safeguard; near the root it is close to 1): where the
 residual is flat at one end, a factor near 0 would throw the next chord back to the other end,

@@ -20,7 +20,7 @@ def trials(start: Start) -> Trials:
     epsilon = 0.5 * start.tolerance.at(max(abs(a), abs(b)))
     halvings = max(0, math.ceil(math.log2((b - a) / (2.0 * epsilon))))
     # A little less, so that rounding does not leave the last interval a digit too wide.
-    epsilon *= 1.0 - 1e-6
+    epsilon -= min(0.25 * epsilon, 4.0 * math.ulp(max(abs(a), abs(b))))
     step = 0
     while True:
         middle = a + (b - a) / 2.0

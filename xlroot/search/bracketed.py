@@ -10,7 +10,7 @@ from __future__ import annotations
 import math
 
 from xlroot.methods import Method, Start, opposite
-from xlroot.nature import Crossing, Nature, evident, examine
+from xlroot.nature import Crossing, Nature, Point, evident, examine
 from xlroot.search.trail import Residual, Run
 from xlroot.stopping import Outcome, Tolerance
 from xlroot.values import Fault
@@ -22,6 +22,9 @@ that methods which close the bracket themselves keep."""
 # Looked up once: finding an enum's member costs as much as a step of the loop.
 _ENCLOSED, _EXACT, _EXHAUSTED = Outcome.ENCLOSED, Outcome.EXACT, Outcome.EXHAUSTED
 _ROOT = Nature.ROOT
+
+# A named tuple made without its Python-level constructor, which takes three times as long.
+_new = tuple.__new__
 
 
 def bracketing(
@@ -37,7 +40,7 @@ def bracketing(
         return _at_a_fault(method, low, high, tolerance, ((low, f_low),), (high, f_high))
     predicted = None if method.predict is None else method.predict(low, high, tolerance)
     if opposite(f_low, f_high):
-        start = Start(low, high, f_low, f_high, tolerance, low)
+        start = _new(Start, (low, high, f_low, f_high, tolerance, low))
         return _converge(method, f, start, limit, predicted)
     ends = ((low, f_low), (high, f_high))
     if f_low == 0.0 or f_high == 0.0:
@@ -90,25 +93,27 @@ def _at_an_end(
 def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: int | None) -> Run:
     # The hot loop: what it costs beside f is most of a short chain's solve, so it is plain.
     a, b, fa, fb, tolerance, _ = start
-    # The ends of the bracket, and the samples next to its present ends.
-    left, right = ends = ((a, fa), (b, fb))
+    # The samples at the present ends of the bracket, and those next to them outside.
+    left, right = low_end, high_end = ends = ((a, fa), (b, fb))
     trials = method.trials(start)
     send = trials.send
     low_is_negative = fa < 0.0
-    relative = tolerance.relative
-    permitted = tolerance.absolute
+    permitted, relative = tolerance
     finest = math.ulp(a) if -b < a else math.ulp(b)
     if relative or permitted < finest:
         permitted = finest
     small = SMALL_STEP * permitted
-    samples: list[tuple[float, float]] = []
+    samples: list[Point] = []
     keep = samples.append
     reach, before = permitted, math.inf
     fault: tuple[float, Fault] | None = None
     outcome = _EXHAUSTED
-    # Where the count is known beforehand, it decides; otherwise the width of the bracket.
+    # Where the count is known beforehand, it decides; otherwise the width of the bracket, held
+    # against the widest that a relative tolerance can permit before the exact comparison.
     counted = predicted is not None and predicted <= limit
-    stop = -1.0 if counted else permitted
+    stop = permitted if not relative else tolerance.at(max(-a, b))
+    if counted:
+        stop = -1.0
     x = next(trials) if limit else a
     for _ in range(predicted if counted and predicted is not None else limit):
         y = f(x)
@@ -116,32 +121,31 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
             assert isinstance(y, Fault)
             fault, outcome = (x, y), Outcome.FAULTED
             break
-        keep((x, y))
+        sample = (x, y)
+        keep(sample)
         if a < x < b:
             if y < 0.0:
                 if low_is_negative:
-                    left, a, fa = (a, fa), x, y
+                    left, low_end, a = low_end, sample, x
                 else:
-                    right, b, fb = (b, fb), x, y
+                    right, high_end, b = high_end, sample, x
             elif y == 0.0:
-                a = b = x
-                fa = fb = 0.0
+                low_end = high_end = sample
                 outcome = _EXACT
                 break
             elif low_is_negative:
-                right, b, fb = (b, fb), x, y
+                right, high_end, b = high_end, sample, x
             else:
-                left, a, fa = (a, fa), x, y
-            if b - a <= stop:
-                outcome = _ENCLOSED
-                break
-            if relative and b - a <= tolerance.at(a if abs(fa) < abs(fb) else b):
+                left, low_end, a = low_end, sample, x
+            if b - a <= stop and (
+                not relative or b - a <= tolerance.at(_better(low_end, high_end)[0])
+            ):
                 outcome = _ENCLOSED
                 break
         if -small < x - before < small:
             # The method's steps have ended; a point just beyond the better end closes in.
             before = math.inf
-            x = _beyond(a, b, fa, fb, reach)
+            x = _beyond(low_end, high_end, reach)
             reach *= 4.0
             continue
         before = x
@@ -149,14 +153,16 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
     else:
         if counted:
             outcome = _ENCLOSED
-    root, residual, nature, checks = None, None, None, 0
-    crossing = Crossing(a, b, fa, fb)
+    (a, fa), (b, fb) = low_end, high_end
+    crossing = _new(Crossing, (a, b, fa, fb))
+    root = residual = nature = None
+    checks = 0
     if outcome is _ENCLOSED or outcome is _EXACT:
         if a < b and evident(crossing, left, right):
             nature = _ROOT
         else:
             nature, checks = examine(f, crossing, ends, samples, tolerance)
-        root, residual = (a, fa) if abs(fa) <= abs(fb) else (b, fb)
+        root, residual = _better(low_end, high_end)
     return Run(
         method,
         start.low,
@@ -177,7 +183,13 @@ def _converge(method: Method, f: Residual, start: Start, limit: int, predicted: 
     )
 
 
-def _beyond(a: float, b: float, fa: float, fb: float, reach: float) -> float:
+def _better(low_end: Point, high_end: Point) -> Point:
+    """The end with the smaller residual."""
+    return low_end if abs(low_end[1]) <= abs(high_end[1]) else high_end
+
+
+def _beyond(low_end: Point, high_end: Point, reach: float) -> float:
     """A point a little inside the bracket from its better end."""
-    x = a + 0.9 * reach if abs(fa) <= abs(fb) else b - 0.9 * reach
+    a, b = low_end[0], high_end[0]
+    x = a + 0.9 * reach if _better(low_end, high_end) is low_end else b - 0.9 * reach
     return x if a < x < b else a + (b - a) / 2.0

@@ -18,7 +18,12 @@ from xlroot.stopping import Outcome
 from xlroot.values import Fault
 
 REST = 1e-6
-"""An open method has to bring the residual below this part of the largest that it met."""
+"""Without a sign change, the residual at the answer has to be below this part of the residual
+some way off on either side; otherwise the search only came to a stop."""
+
+OFF = 1e-3
+"""That way, as a part of the limits' width, or `FAR` tolerances where that is further."""
+FAR = 1e4
 
 
 def unbracketed(f: Residual, start: Start, method: Method, differences: Slopes, limit: int) -> Run:
@@ -125,9 +130,17 @@ def _enclosed(f: Residual, ended: Run) -> Run:
         ends = ((ended.low, math.inf), (ended.high, math.inf))
         nature, checks = examine(f, crossing, ends, ended.samples, ended.tolerance)
         return found._replace(enclosure=crossing, nature=nature, checks=2 + checks)
-    if residual and abs(residual) > REST * max(abs(y) for _, y in ended.samples):
-        return ended._replace(outcome=Outcome.STALLED, checks=2)
+    if not _rests(f, ended, root, residual):
+        return ended._replace(outcome=Outcome.STALLED, checks=4)
+    notes = found.notes
     if f_left == 0.0 and f_right == 0.0:
-        note = "the residual is exactly zero on both sides as well: it is flat there"
-        return found._replace(notes=(*found.notes, note))
-    return found
+        notes = (*notes, "the residual is exactly zero on both sides as well: it is flat there")
+    return found._replace(notes=notes, checks=4)
+
+
+def _rests(f: Residual, ended: Run, root: float, residual: float) -> bool:
+    """Whether the residual is all but zero at the root, compared with two values further off."""
+    distance = max(OFF * (ended.high - ended.low), FAR * ended.tolerance.at(root))
+    off = (max(ended.low, root - distance), min(ended.high, root + distance))
+    around = [abs(y) for x in off if isinstance(y := f(x), float) and x != root]
+    return (bool(around) and abs(residual) <= REST * min(around)) or residual == 0.0
