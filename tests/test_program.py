@@ -64,6 +64,15 @@ CHAINS: list[tuple[str, dict[str, Content]]] = [
     ("rounding", {"A2": "=ROUND(A1,1)", "A3": "=INT(A1)+A2+MOD(A1,2)"}),
     ("functions of many kinds", {"A3": "=EXP(-A1)+SIN(A1)*ATAN(A1)+LN(A1)-LOG10(A1)+ABS(A1)"}),
     ("CHOOSE and IFS", {"A2": "=IFS(A1<0,1,A1<2,2,TRUE,3)", "A3": "=CHOOSE(A2,10,20,30)*A1"}),
+    ("arrays in plain formulas", {"A3": "=SUM(A1*{1,2,3})+SUM(A1^{1,2})+{5,6}+SUM(-{1;2})"}),
+    (
+        "arrays from functions",
+        {
+            "B1": 1,
+            "B2": "=A1",
+            "A3": "=SUM(IFERROR(TRANSPOSE(B1:B2),0)*A1)+SUM(LARGE(B1:B2,{1,2}))",
+        },
+    ),
     ("powers that are not real", {"A3": "=A1^0.5+A1^2+A1^A1"}),
 ]
 
@@ -75,6 +84,12 @@ def test_compiled_code_gives_what_the_interpreter_gives(
     name: str, contents: dict[str, Content]
 ) -> None:
     assert_kinds_agree(program_of({"A1": 1.0, **contents}, "A3", "A1"), XS)
+
+
+def test_array_constants_work_element_by_element_in_a_plain_formula() -> None:
+    contents: dict[str, Content] = {"C1": 1, "C2": 5, "C3": 3, "A1": 2}
+    contents["A3"] = "=SUM(A1*{1,2,3})+SUM(LARGE(C1:C3,{1,2}))+SUM(A1^{1,2})"
+    assert program_of(contents, "A3", "A1").real(2.0) == 12.0 + 8.0 + 6.0
 
 
 def test_constant_parts_are_folded() -> None:

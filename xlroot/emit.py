@@ -28,7 +28,7 @@ from xlroot.cells import Block, Cell
 from xlroot.chain import Chain
 from xlroot.formula import Area, Array, Binary, Call, Literal, Local, Node, Omitted, Unary
 from xlroot.functions.entry import Entry, Fold, Gives, Takes
-from xlroot.interpret import ARRAY_TAKERS, Mode, Scope, evaluate, single
+from xlroot.interpret import ARRAY_TAKERS, Mode, Scope, by_element, evaluate, single
 from xlroot.kinds import array as array_kind
 from xlroot.ledger import Ledger
 from xlroot.values import Fault, Value, to_logical, to_number
@@ -73,6 +73,10 @@ class Expr(NamedTuple):
 
 class Opaque(Exception):
     """This node cannot be written as code of this kind."""
+
+
+class Whole(Exception):
+    """An array stands within this formula: only the interpreter computes it as a whole."""
 
 
 class Dialect(NamedTuple):
@@ -136,7 +140,10 @@ class Emitter:
     def formula(self, node: Node, cell: Cell) -> Expr:
         """The formula of a plain chain cell; a reference is what its cell holds, a blank is 0."""
         self.cell = cell
-        expr = self.emit(node)
+        try:
+            expr = self.emit(node)
+        except Whole:
+            expr = self._by_part(node)
         if expr.sort is Sort.ANY and not expr.fixed and not self.dialect.vector:
             return Expr(f"shown({expr.text})", Sort.ANY)
         return expr
@@ -149,11 +156,10 @@ class Emitter:
             expr = self.emit(node)
             if expr.fixed or expr.sort in (Sort.NUMBER, Sort.LOGICAL):
                 return self.number(expr) if expr.fixed else expr
-        except Opaque:
+        except (Opaque, Whole):
             pass
         assert self.element is not None
-        self.element.cell = cell
-        inner = self.element.emit(node)
+        inner = self.element.formula(node, cell)
         vector = self._over_vectors(f"plain({inner.text})")
         return Expr(self.kept(vector), Sort.NUMBER)
 
@@ -191,7 +197,10 @@ class Emitter:
     def constant(self, node: Node) -> Value:
         """The value of a node that does not move."""
         scope = Scope(self.cell, self.ledger)
-        return single(evaluate(node, scope), scope)
+        value = evaluate(node, scope)
+        if by_element(value, scope):
+            raise Whole
+        return single(value, scope)
 
     def fixed(self, value: Value) -> Expr:
         """A constant."""
@@ -341,7 +350,7 @@ class Emitter:
         if expr.fixed:
             number = to_number(expr.value)
             if isinstance(number, Fault):
-                return Expr("fail()", Sort.NUMBER)
+                return Expr("fail()", Sort.NUMBER, grows=self.dialect.vector)
             return self.fixed(number)
         if expr.sort is Sort.NUMBER:
             return expr
@@ -404,7 +413,9 @@ class Emitter:
             texts = [each.text for each in numbers]
         else:
             texts = [self.kept(each) for each in numbers]
-        return Expr(f"({form.format(*texts)})", Sort.NUMBER, grows=any(c in form for c in "+-*/"))
+        # Over vectors a function does not raise outside its domain: its NaN has to be noticed.
+        grows = self.dialect.vector or any(sign in form for sign in "+-*/")
+        return Expr(f"({form.format(*texts)})", Sort.NUMBER, grows=grows)
 
     def _fold(self, entry: Entry, node: Call) -> Expr:
         terms: list[Expr] = []

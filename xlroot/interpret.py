@@ -164,6 +164,19 @@ def single(operand: Operand, scope: Scope) -> Value:
     return Fault.VALUE
 
 
+def by_element(operand: Operand, scope: Scope) -> bool:
+    """Whether an operation goes through the operand element by element: every grid in an array
+    formula, and an array, which no cell can line up with, in a plain one."""
+    if not isinstance(operand, Grid):
+        return False
+    return scope.mode is Mode.ARRAY or (operand.block is None and operand.extent != (1, 1))
+
+
+def settled(operand: Operand, scope: Scope) -> Operand:
+    """The operand as an operation by element takes it."""
+    return operand if by_element(operand, scope) else single(operand, scope)
+
+
 def _evaluate(node: Node, scope: Scope) -> Operand | Closure:
     if isinstance(node, Literal):
         return node.value
@@ -193,10 +206,10 @@ def _unary(node: Unary, scope: Scope) -> Operand:
     if node.operator == "@":
         return single(operand, scope)
     if node.operator == "+":
-        return operand if scope.mode is Mode.ARRAY else single(operand, scope)
+        return operand if by_element(operand, scope) else single(operand, scope)
     operate = negate if node.operator == "-" else percent
-    if scope.mode is Mode.ARRAY and isinstance(operand, Grid):
-        return Grid(tuple(tuple(map(operate, row)) for row in operand.rows))
+    if by_element(operand, scope):
+        return _lift(operate, (operand,), scope)
     return operate(single(operand, scope))
 
 
@@ -211,8 +224,8 @@ def _binary(node: Binary, scope: Scope) -> Operand:
     result = evaluate(left, scope)
     for operator, right in reversed(pending):
         operate, other = OPERATORS[operator], evaluate(right, scope)
-        if scope.mode is Mode.ARRAY and (isinstance(result, Grid) or isinstance(other, Grid)):
-            result = _lift(operate, (result, other), scope)
+        if by_element(result, scope) or by_element(other, scope):
+            result = _lift(operate, (settled(result, scope), settled(other, scope)), scope)
         else:
             result = operate(single(result, scope), single(other, scope))
     return result
@@ -318,13 +331,11 @@ def _served(
             arguments.extend(_raw(node, scope))
         else:
             operand = evaluate(node, scope)
-            if isinstance(operand, Grid):
-                if scope.mode is Mode.ARRAY:
-                    lifted = True
-                    arguments.append(operand)
-                    continue
-                operand = single(operand, scope)
-            value = coerced(take, operand)
+            if by_element(operand, scope):
+                lifted = True
+                arguments.append(operand)
+                continue
+            value = coerced(take, single(operand, scope))
             if isinstance(value, Fault) and take is not Takes.VALUE and not lifted:
                 return value
             arguments.append(value)

@@ -21,7 +21,7 @@ from xlroot.chain import Chain
 from xlroot.emit import ARRAY, ELEMENT, REAL, Emitter, Expr, Opaque, Sort
 from xlroot.errors import Unsupported
 from xlroot.formula import Call, Node
-from xlroot.interpret import Mode, Scope, evaluate, formula_value, single
+from xlroot.interpret import Mode, Scope, by_element, evaluate, formula_value, single
 from xlroot.kinds import array as array_kind
 from xlroot.kinds.real import OPERATORS, PRIMITIVES, join
 from xlroot.ledger import Ledger, array_result, grid_part
@@ -140,7 +140,12 @@ class Program:
     # -- compiled -----------------------------------------------------------------------------
 
     def _emitter(
-        self, namespace: dict[str, object], *, sorts: dict[str, Sort], **others: Any
+        self,
+        namespace: dict[str, object],
+        *,
+        sorts: dict[str, Sort],
+        growing: set[str],
+        **others: Any,
     ) -> Emitter:
         return Emitter(
             chain=self.chain,
@@ -148,14 +153,14 @@ class Program:
             namespace=namespace,
             variables=self.variables,
             sorts=sorts,
-            growing=self.growing,
+            growing=growing,
             part=self._part,
             **others,
         )
 
     def _compile_real(self) -> Callable[[float], float | Fault]:
         namespace = self._real_namespace()
-        emitter = self._emitter(namespace, dialect=REAL, sorts=self.sorts)
+        emitter = self._emitter(namespace, dialect=REAL, sorts=self.sorts, growing=self.growing)
         lines = []
         for step in self.chain.steps:
             name = self.variables[step.cell]
@@ -226,7 +231,10 @@ class Program:
         def part(*values: Value) -> Value:
             frame = Frame(self.ledger, dict(zip(cells, values, strict=True)), self.moves)
             scope = Scope(cell, frame)
-            return single(evaluate(node, scope), scope)
+            value = evaluate(node, scope)
+            if by_element(value, scope):
+                raise NotPlain
+            return single(value, scope)
 
         return part
 
@@ -261,9 +269,15 @@ class Program:
             return made
 
         sorts = dict(self.sorts)
-        element = self._emitter(scalars, dialect=ELEMENT, sorts=sorts)
+        growing: set[str] = set()
+        element = self._emitter(scalars, dialect=ELEMENT, sorts=sorts, growing=growing)
         emitter = self._emitter(
-            namespace, dialect=ARRAY, sorts=sorts, element=element, vectorised=vectorised
+            namespace,
+            dialect=ARRAY,
+            sorts=sorts,
+            growing=growing,
+            element=element,
+            vectorised=vectorised,
         )
         lines = []
         for step in self.chain.steps:
@@ -276,6 +290,8 @@ class Program:
             name = self.variables[step.cell]
             lines.append(f"{name} = {expr.text}")
             sorts[name] = expr.sort
+            if expr.grows:
+                growing.add(name)
         result = self.variables[self.chain.residual]
         guards = list(dict.fromkeys(emitter.guards))
         lines = _freed(lines, keep={result, *guards})

@@ -33,7 +33,7 @@ _MONTH_NUMBER = {name: number for number, name in enumerate(_MONTHS, start=1)}
 _MONTH_NUMBER |= {name[:3]: number for name, number in _MONTH_NUMBER.items()}
 _DATE_WORDS = {*_MONTH_NUMBER, "sept", "am", "pm"}
 _WORD = re.compile(r"[^\W\d_]+")
-_NUMERIC_SIGNS = re.compile(r"[\s\d.,:/'()+\-%$€£¥]*\d[\s\d.,:/'()+\-%$€£¥]*")
+_NUMERIC_SIGNS = re.compile(r"[\s\d.,:/'()+\-%$€£¥\xa0]*\d[\s\d.,:/'()+\-%$€£¥\xa0]*", re.ASCII)
 
 FIRST_SERIAL = date(1899, 12, 30)
 """Serial 0 of the 1900 system, for dates from 1 March 1900 on."""
@@ -94,6 +94,8 @@ def read_date(text: str) -> float | Fault:
     """The date in a text, with the time behind it if there is one, as a serial of the 1900
     system; #VALUE! where there is none, Unsupported where readers differ."""
     stripped = text.strip(" ")
+    if decimal(stripped) is not None:
+        return Fault.VALUE
     whole, clock = stripped, 0.0
     behind = _MOMENT.fullmatch(stripped)
     if behind:
