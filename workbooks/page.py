@@ -123,7 +123,9 @@ class Page:
             cell.value = text
             cell.font = Font(size=9, bold=True, color=INK)
             cell.border = Border(bottom=HAIR)
-            cell.alignment = Alignment(wrap_text=True, horizontal="left" if column == "A" else "right")
+            cell.alignment = Alignment(
+                wrap_text=True, horizontal="left" if column == "A" else "right"
+            )
         self.row += 1
 
     def remark(self, text: str) -> None:

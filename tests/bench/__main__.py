@@ -128,7 +128,9 @@ def libraries(bench: Bench, program: Program) -> None:
         ours(), theirs()
         pairs = [(seconds(theirs, 1), seconds(ours, times_for(ours))) for _ in range(3)]
         ratio = statistics.median(a / b for a, b in pairs)
-        print(f"{bench.name}: a solve with {name} in the loop takes {ratio:,.0f} times as long  {goal}")
+        print(
+            f"{bench.name}: a solve with {name} in the loop takes {ratio:,.0f} times as long  {goal}"
+        )
 
 
 def shell(cells: int, folder: Path) -> None:
@@ -176,7 +178,9 @@ def _peak(command: list[str]) -> str:
 
 
 def main() -> None:
-    print(f"{'median of ' + str(ROUNDS) + ' rounds':<58} {'ours, µs':>10} {'theirs, µs':>12} {'ratio':>8}")
+    print(
+        f"{'median of ' + str(ROUNDS) + ' rounds':<58} {'ours, µs':>10} {'theirs, µs':>12} {'ratio':>8}"
+    )
     for bench in chains():
         program = program_of(bench)
         print(f"-- {bench.name}: {len(program.chain.steps)} chain cells")

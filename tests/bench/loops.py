@@ -88,9 +88,7 @@ def with_formulas(bench: Bench) -> Residual:
         return f"'[bench.xlsx]{sheet.upper()}'!{cell}"
 
     def f(x: float) -> float:
-        solution = model.calculate(
-            inputs={name(bench.unknown): x}, outputs=[name(bench.residual)]
-        )
+        solution = model.calculate(inputs={name(bench.unknown): x}, outputs=[name(bench.residual)])
         return float(solution[name(bench.residual)].value[0, 0])
 
     return f

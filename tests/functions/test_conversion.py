@@ -84,6 +84,7 @@ def test_text(number: float, code: str, shown: object) -> None:
         (-0.001, "0.00"),
         (-5.0, ""),
         (1.0, "Pump"),
+        (1.0, "0\x00"),
         (1.0, "yyyy 0"),
         (40.0, "yyyy-mm-dd"),
         (0.0, "mmm"),

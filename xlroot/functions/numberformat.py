@@ -19,6 +19,9 @@ from xlroot.values import Fault
 DIGITS = 700
 """Decimal digits that hold any float with any number of places."""
 
+LONGEST_CODE = 255
+"""Signs of a format that a cell can hold."""
+
 _TOKEN = re.compile(r'"([^"]*)"|\\(.)|(;)|(General)|([^"\\;])', re.DOTALL | re.IGNORECASE)
 _CORE = re.compile(r"(?:[#0?][#0?,]*)?(?:\.[#0?]*,*)?(?:[eE][+-]0+)?")
 _SHAPE = re.compile(
@@ -64,6 +67,8 @@ def _refusal(code: str) -> Unsupported:
 
 
 def _sections(code: str) -> list[_Section]:
+    if len(code) > LONGEST_CODE or not code.isprintable():
+        raise _refusal(f"{code[:20]}…")
     found: list[tuple[str, list[str]]] = [("", [])]
     position = 0
     while position < len(code):
