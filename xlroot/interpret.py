@@ -128,6 +128,9 @@ ARRAY_TAKERS = frozenset(
 OWN_PREFIX = "XLROOT"
 """How the names of xlroot's own functions begin."""
 
+CHOOSERS = frozenset(("IF", "IFS", "SWITCH", "CHOOSE"))
+"""Functions that may give a reference as it is."""
+
 SINGLE_LINE = frozenset(("SUM", "PRODUCT", "MIN", "MAX", "AVERAGE", "COUNT", "COUNTA", "SUMSQ"))
 """Functions that take every range by itself, so that unlike extents do no harm."""
 
@@ -357,7 +360,14 @@ def _raw(node: Node, scope: Scope) -> list[Operand]:
         return [scope.reader.grid(node.block)]
     if isinstance(node, Union):
         return [each for part in node.parts for each in _raw(part, scope)]
-    return [evaluate(node, scope)]
+    operand = evaluate(node, scope)
+    chooses = isinstance(node, Call) and node.name in CHOOSERS
+    if chooses and isinstance(operand, (str, bool)):
+        assert isinstance(node, Call)
+        if any(isinstance(each, Area) for each in node.arguments):
+            # A reference's text would not count, a written one would; which it is, is lost here.
+            raise scope.refuse(f"{node.name} chooses a text or logical from cells within a total")
+    return [operand]
 
 
 def coerced(take: Takes, value: Value) -> Value:

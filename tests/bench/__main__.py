@@ -128,9 +128,8 @@ def libraries(bench: Bench, program: Program) -> None:
         ours(), theirs()
         pairs = [(seconds(theirs, 1), seconds(ours, times_for(ours))) for _ in range(3)]
         ratio = statistics.median(a / b for a, b in pairs)
-        print(
-            f"{bench.name}: a solve with {name} in the loop takes {ratio:,.0f} times as long  {goal}"
-        )
+        what = f"{bench.name}: a solve with {name} in the loop takes"
+        print(f"{what} {ratio:,.0f} times as long  {goal}")
 
 
 def shell(cells: int, folder: Path) -> None:
@@ -161,8 +160,8 @@ def shell(cells: int, folder: Path) -> None:
     goal = "goal 20" if cells == 5 else "goal 30"
     peak = _peak(command)
     print(
-        f"shell to root, book of {cells:,} formulas: {ratio:.1f} times a bare interpreter ({goal}); "
-        f"{ratios[0][0] * 1e3:.0f} ms, peak memory {peak}"
+        f"shell to root, book of {cells:,} formulas: {ratio:.1f} times a bare interpreter "
+        f"({goal}); {ratios[0][0] * 1e3:.0f} ms, peak memory {peak}"
     )
 
 
@@ -178,9 +177,8 @@ def _peak(command: list[str]) -> str:
 
 
 def main() -> None:
-    print(
-        f"{'median of ' + str(ROUNDS) + ' rounds':<58} {'ours, µs':>10} {'theirs, µs':>12} {'ratio':>8}"
-    )
+    heading = f"median of {ROUNDS} rounds"
+    print(f"{heading:<58} {'ours, µs':>10} {'theirs, µs':>12} {'ratio':>8}")
     for bench in chains():
         program = program_of(bench)
         print(f"-- {bench.name}: {len(program.chain.steps)} chain cells")

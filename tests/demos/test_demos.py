@@ -128,4 +128,4 @@ def test_the_files_are_what_the_script_builds(work: object) -> None:
 def _bare(text: object) -> str:
     """A formula without what hosts write otherwise: spaces, quotes around names, exponents."""
     bare = str(text).replace(" ", "").replace("'", "").replace("$", "")
-    return bare.upper().replace("E-0", "E-").replace("0.000000001", "1E-9")
+    return bare.upper().replace("E-0", "E-").replace("0.000000001", "1E-9").replace("+0.0", "+0")

@@ -149,7 +149,7 @@ def butler_volmer(inputs: dict[str, Any]) -> Cells:
         "C2": inputs["i"],
         "C3": inputs["T"],
         "C4": 96485.33212,
-        "C5": 8.31446261815324,
+        "C5": 8.314462618,
         "B2": "=C1*(EXP(0.5*C4*B1/(C5*C3))-EXP(-0.5*C4*B1/(C5*C3)))-C2",
     }
 

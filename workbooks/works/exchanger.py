@@ -45,9 +45,9 @@ def build(book: Workbook) -> list[Page]:
     table.heading("Saturated liquid, IAPWS-95 values rounded (from memory)")
     table.row_of(["Temperature °C", "kJ/(kg K)"])
     first = table.row
-    for temperature, capacity in TABLE:
+    for temperature, listed in TABLE:
         table.put(f"A{table.row}", temperature)
-        table.put(f"B{table.row}", capacity, shown="0.000")
+        table.put(f"B{table.row}", listed, shown="0.000")
         table.row += 1
     last = table.row - 1
     ts, cs = f"Properties!$A${first}:$A${last}", f"Properties!$B${first}:$B${last}"
@@ -60,8 +60,8 @@ def build(book: Workbook) -> list[Page]:
     )
     mean = page.line("Mean temperature", f"=(Hot_in+{outlet})/2", "°C", shown="0.00")
     place = page.line("Row of the table", f"=MATCH({mean},{ts},1)", "")
-    low = page.line("Capacity below", f"=INDEX({cs},{place})", "kJ/(kg K)", shown="0.000")
-    high = page.line("Capacity above", f"=INDEX({cs},{place}+1)", "kJ/(kg K)", shown="0.000")
+    below = page.line("Capacity below", f"=INDEX({cs},{place})", "kJ/(kg K)", shown="0.000")
+    above = page.line("Capacity above", f"=INDEX({cs},{place}+1)", "kJ/(kg K)", shown="0.000")
     share = page.line(
         "Share of the step",
         f"=({mean}-INDEX({ts},{place}))/(INDEX({ts},{place}+1)-INDEX({ts},{place}))",
@@ -69,7 +69,7 @@ def build(book: Workbook) -> list[Page]:
         shown="0.000",
     )
     capacity = page.line(
-        "Heat capacity", f"={low}+{share}*({high}-{low})", "kJ/(kg K)", shown="0.0000"
+        "Heat capacity", f"={below}+{share}*({above}-{below})", "kJ/(kg K)", shown="0.0000"
     )
     page.heading("Exchanger, counterflow")
     hot = page.line("Hot stream", f"=Hot_flow*{capacity}", "kW/K", shown="0.000")

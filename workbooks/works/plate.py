@@ -54,7 +54,7 @@ def build(book: Workbook) -> list[Page]:
         shown="0.0000",
     )
     page.line(
-        "Enclosure, low and high", Ask(f"XLROOT_BOUNDS({ask})", "2"), "mm", shown="0.00000000"
+        "Enclosure, low and high", Ask(f"XLROOT_BOUNDS({ask})", "2"), "", "", shown="0.00000000"
     )
     page.line("How well known", Ask(f"XLROOT_VERDICT({ask})"))
     order = page.line(

@@ -23,7 +23,7 @@ def build(book: Workbook) -> list[Page]:
     page.heading("Given")
     cost = page.line("Investment", 3850000, "EUR", fill=GIVEN, shown="#,##0")
     amount = page.line("Gas sold, first year", 640000, "m3", fill=GIVEN, shown="#,##0")
-    price = page.line("Price of gas", 1.12, "EUR/m3", fill=GIVEN, shown="0.0000", name="Price")
+    page.line("Price of gas", 1.12, "EUR/m3", fill=GIVEN, shown="0.0000", name="Price")
     rise = page.line("Rise of the price", 0.015, "1/year", fill=GIVEN, shown="0.0%")
     upkeep = page.line("Operation and upkeep", 165000, "EUR/year", fill=GIVEN, shown="#,##0")
     page.line("Hurdle rate", 0.06, "1/year", fill=GIVEN, shown="0.0%", name="Hurdle")
