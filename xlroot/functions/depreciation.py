@@ -137,7 +137,10 @@ def amorlinc(
     _refuse_unusual(cost, salvage, period)
     each = cost * rate
     first = each * year_part(start, end, way)
-    whole = math.floor((cost - salvage - first) / each)
+    left = (cost - salvage - first) / each if each else math.inf
+    if not math.isfinite(left):
+        return Fault.NUM
+    whole = math.floor(left)
     if period == 0.0:
         return finite(first)
     if period <= whole:
