@@ -31,6 +31,7 @@ ORDER = [
     "ledger",
     "chain",
     "emit",
+    "runtime",
     "program",
     "labels",
     "question",

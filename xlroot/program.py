@@ -8,9 +8,7 @@ computes the chain again for that trial value, so the answer is always the inter
 
 from __future__ import annotations
 
-import math
 import re
-from bisect import bisect_right
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -19,27 +17,19 @@ from typing import TYPE_CHECKING, Any
 from xlroot.cells import Block, Cell
 from xlroot.chain import Chain
 from xlroot.emit import ARRAY, ELEMENT, REAL, Emitter, Expr, Opaque, Sort
-from xlroot.errors import Unsupported
 from xlroot.formula import Call, Node
 from xlroot.interpret import Mode, Scope, by_element, evaluate, formula_value, single
 from xlroot.kinds import array as array_kind
-from xlroot.kinds.real import OPERATORS, PRIMITIVES, join
+from xlroot.kinds.real import PRIMITIVES
 from xlroot.ledger import Ledger, array_result, grid_part
-from xlroot.values import Fault, Grid, Operand, Value, to_logical, to_number, to_text
+from xlroot.runtime import CAUGHT, HELPERS, NotPlain
+from xlroot.values import Fault, Grid, Operand, Value, to_number
 
 if TYPE_CHECKING:
     import numpy as np
 
 BLOCK = 2048
 """Trial values that the array kind computes at a time: vectors that stay in the cache."""
-
-
-class NotPlain(Exception):
-    """Compiled code met something that only the interpreter decides."""
-
-
-CAUGHT = (ArithmeticError, ValueError, NotPlain, Unsupported)
-"""What compiled code raises where the interpreter has to decide."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -248,7 +238,7 @@ class Program:
     def _real_namespace(self) -> dict[str, object]:
         return {
             **PRIMITIVES,
-            **_HELPERS,
+            **HELPERS,
             "CAUGHT": CAUGHT,
             "exact": self.exact,
             "__builtins__": {},
@@ -350,133 +340,3 @@ def _freed(lines: list[str], keep: set[str]) -> list[str]:
 
 
 _VARIABLE = re.compile(r"\bv\d+\b")
-
-
-def _single(value: object) -> object:
-    """A reference to one cell, as INDEX gives it, as what the cell holds."""
-    if isinstance(value, Grid):
-        if value.height == value.width == 1:
-            return value.rows[0][0]
-        raise NotPlain
-    return value
-
-
-def _number_of(value: object) -> float:
-    if type(value) is float:
-        return value
-    value = _single(value)
-    if value is None or isinstance(value, (float, bool, str)):
-        number = to_number(value)
-        if type(number) is float:
-            return number
-    raise NotPlain
-
-
-def _outcome(value: object) -> float:
-    """The residual's number; a text is none, whatever it reads as."""
-    if isinstance(value, str):
-        raise NotPlain
-    return _number_of(value)
-
-
-def _truth(value: object) -> bool:
-    value = _single(value)
-    if value is None or isinstance(value, (bool, float, str)):
-        logical = to_logical(value)
-        if isinstance(logical, bool):
-            return logical
-    raise NotPlain
-
-
-def _text_of(value: object) -> str:
-    value = _single(value)
-    if value is None or isinstance(value, (float, bool, str)):
-        text = to_text(value)
-        if isinstance(text, str):
-            return text
-    raise NotPlain
-
-
-def _one(value: object) -> object:
-    value = _single(value)
-    if isinstance(value, Fault):
-        raise NotPlain
-    return value
-
-
-def _shown(value: object) -> object:
-    """What a cell shows whose formula gives the value; a blank shows as 0."""
-    value = _single(value)
-    return 0.0 if value is None else value
-
-
-def _located(count: int) -> float:
-    """The position that a bisection found; none is a fault."""
-    if count:
-        return float(count)
-    raise NotPlain
-
-
-def _picked(line: tuple[float, ...], place: float) -> float:
-    """The number at a position counted from 1."""
-    position = int(place)
-    if 1 <= position <= len(line):
-        return line[position - 1]
-    raise NotPlain
-
-
-def _finite(value: float) -> float:
-    if math.isfinite(value):
-        return value
-    raise NotPlain
-
-
-def _plain(value: object) -> float:
-    value = _single(value)
-    if type(value) is float:
-        return value
-    raise NotPlain
-
-
-def _fail() -> float:
-    raise NotPlain
-
-
-def _total(terms: tuple[float, ...]) -> float:
-    result = 0.0
-    for term in terms:
-        result += term
-    return result
-
-
-_HELPERS: dict[str, object] = {
-    "number_of": _number_of,
-    "outcome": _outcome,
-    "truth": _truth,
-    "text_of": _text_of,
-    "one": _one,
-    "shown": _shown,
-    "flat": _single,
-    "bisected": bisect_right,
-    "located": _located,
-    "picked": _picked,
-    "finite": _finite,
-    "plain": _plain,
-    "fail": _fail,
-    "total": _total,
-    "product": math.prod,
-    "least": min,
-    "most_of": max,
-    "negated": lambda value: not value,
-    "raised": math.pow,
-    "join": join,
-    "Grid": Grid,
-    "grid_part": grid_part,
-    "equal": OPERATORS["="],
-    "differ": OPERATORS["<>"],
-    "less": OPERATORS["<"],
-    "most": OPERATORS["<="],
-    "more": OPERATORS[">"],
-    "least_of": OPERATORS[">="],
-}
-"""What compiled text calls besides the kind's primitives."""
