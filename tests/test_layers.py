@@ -37,6 +37,7 @@ ORDER = [
     "question",
     "fingerprint",
     "baseline",
+    "desk",
     "search",
     "scan",
     "verdict",

@@ -12,13 +12,14 @@ from pathlib import Path
 from xlroot.book import Book
 from xlroot.cells import Cell
 from xlroot.depend import Bindings
+from xlroot.desk import Desk, prepare
 from xlroot.docket import Docket
 from xlroot.hosts.saved import read_book
 from xlroot.ledger import Ledger, Policy, Volatile
 from xlroot.question import Question
 from xlroot.record import Record
 from xlroot.scan import Look, look
-from xlroot.solving import Desk, ask, prepare
+from xlroot.solving import ask
 from xlroot.solving import solve as solve_question
 from xlroot.stopping import SafeSide
 from xlroot.values import Value

@@ -15,6 +15,7 @@ from xlroot.bind import walk
 from xlroot.book import Book, Formula
 from xlroot.cells import Cell
 from xlroot.depend import Bindings
+from xlroot.desk import Desk, prepare
 from xlroot.errors import IndependentError, QuestionError, Unsupported, XlrootError
 from xlroot.formula import Area, Call, Node, Omitted
 from xlroot.interpret import OWN_PREFIX, Mode, Scope, evaluate, single
@@ -22,7 +23,7 @@ from xlroot.ledger import Ledger, array_result, grid_part
 from xlroot.program import Program
 from xlroot.question import Question
 from xlroot.record import Record
-from xlroot.solving import Desk, ask, prepare, refused_record, relabelled, solve
+from xlroot.solving import ask, refused_record, relabelled, solve
 from xlroot.values import Fault, Grid, Operand, Value, to_number, to_text
 from xlroot.worksheet import BY_NAME, REFUSAL, Argument, Given, Presence, Wants
 
