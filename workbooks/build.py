@@ -22,6 +22,11 @@ HERE = Path(__file__).parent
 sys.path.insert(0, str(HERE.parent))
 
 from openpyxl import Workbook  # noqa: E402
+from openpyxl.utils.cell import (  # noqa: E402
+    column_index_from_string,
+    coordinate_from_string,
+    get_column_letter,
+)
 
 from workbooks.independent import ROOTS  # noqa: E402
 from workbooks.page import Ask, Page  # noqa: E402
@@ -84,8 +89,8 @@ def written(work: ModuleType, results: Results, folder: Path, target: Path) -> N
     book, pages = pages_of(work)
     for page in pages:
         for address in page.asks:
-            value = results.get(page.sheet.title, {}).get(address)
-            page.sheet[address] = value.rows[0][0] if isinstance(value, Grid) else value
+            for place, value in _spread(address, results.get(page.sheet.title, {}).get(address)):
+                page.sheet[place] = value
     source = folder / target.name
     book.save(source)
     saved = recalculated(source, folder)
@@ -104,61 +109,53 @@ def _with_formulas(
             if sheet is not None:
                 content = _patched(content, asks[sheet], results.get(sheet, {}))
             if item.filename == "docProps/core.xml":
-                content = re.sub(
-                    rb"<dcterms:(created|modified)[^>]*>[^<]*</dcterms:\1>", b"", content
-                )
+                content = _DATES.sub(b"", content)
             new.writestr(zipfile.ZipInfo(item.filename, EPOCH), content, zipfile.ZIP_DEFLATED)
+
+
+def _spread(address: str, value: Operand) -> list[tuple[str, Value]]:
+    """The cells that an answer fills, with what each shows."""
+    if not isinstance(value, Grid):
+        return [(address, value)]
+    column, row = coordinate_from_string(address)
+    left = column_index_from_string(column)
+    return [
+        (f"{get_column_letter(left + right)}{row + down}", each)
+        for down, values in enumerate(value.rows)
+        for right, each in enumerate(values)
+    ]
 
 
 def _patched(content: bytes, asks: dict[str, Ask], results: dict[str, Operand]) -> bytes:
     text = content.decode("utf-8")
     for address, ask in asks.items():
-        value = results.get(address)
-        grid = value if isinstance(value, Grid) else Grid(((value,),))
-        letters = address.rstrip("0123456789")
-        row = int(address[len(letters) :])
-        block = ""
-        if ask.filled and value is not None:
-            last = f"{chr(ord(letters) + grid.width - 1)}{row + grid.height - 1}"
-            block = f' t="array" ref="{address}:{last}"'
-        for down, values in enumerate(grid.rows):
-            for right, each in enumerate(values):
-                place = f"{chr(ord(letters) + right)}{row + down}"
-                formula = ""
-                if down == right == 0:
-                    formula = f"<f{block}>{escape(ask.formula)}</f>"
-                text = _with_cell(text, place, row + down, formula, each)
+        answer = results.get(address)
+        cells = _spread(address, answer)
+        if answer is not None and ask.filled and ask.filled != f"{address}:{cells[-1][0]}":
+            raise SystemExit(
+                f"{address} fills to {cells[-1][0]}; its table is laid out {ask.filled}"
+            )
+        block = f' t="array" ref="{ask.filled}"' if ask.filled else ""
+        formula = f"<f{block}>{escape(ask.formula)}</f>"
+        for place, value in cells:
+            text = _with_cell(text, place, formula if place == address else "", value)
     return text.encode("utf-8")
 
 
-def _with_cell(text: str, place: str, row: int, formula: str, value: Value) -> str:
-    """The sheet's XML with one cell's content replaced, the cell made if it is not there."""
-    pattern = re.compile(rf'<c r="{place}"([^>]*?)(?:/>|>.*?</c>)', re.DOTALL)
-    match = pattern.search(text)
-    style = re.search(r' s="\d+"', match[1]) if match else None
-    kept = style[0] if style else ""
+def _with_cell(text: str, place: str, formula: str, value: Value) -> str:
+    """The sheet's XML with one cell's content replaced; the host has written the cell."""
+    match = re.search(rf'<c r="{place}"([^>]*?)(?:/>|>.*?</c>)', text, re.DOTALL)
+    if match is None:
+        raise SystemExit(f"the host wrote no cell {place}: give it a fill")
+    style = re.search(r' s="\d+"', match[1])
+    opened = f'<c r="{place}"{style[0] if style else ""}'
     if isinstance(value, str):
-        content = f'<c r="{place}"{kept} t="str">{formula}<v>{escape(value)}</v></c>'
-    elif value is None:
-        content = f'<c r="{place}"{kept}>{formula}</c>'
+        content = f'{opened} t="str">{formula}<v>{escape(value)}</v></c>'
+    elif isinstance(value, float | int):
+        content = f"{opened}>{formula}<v>{float(value)!r}</v></c>"
     else:
-        content = f'<c r="{place}"{kept}>{formula}<v>{float(value)!r}</v></c>'  # type: ignore[arg-type]
-    if match:
-        return text[: match.start()] + content + text[match.end() :]
-    line = re.search(rf'(<row r="{row}"[^>]*?)(/>|>(.*?)</row>)', text, re.DOTALL)
-    if line is None:
-        following = re.search(r'<row r="(\d+)"', text)
-        places = [m for m in re.finditer(r'<row r="(\d+)"', text) if int(m[1]) > row]
-        at = places[0].start() if places else text.index("</sheetData>")
-        assert following
-        return text[:at] + f'<row r="{row}">{content}</row>' + text[at:]
-    inside = line[3] or ""
-    later = [
-        m for m in re.finditer(r'<c r="([A-Z]+)\d+"', inside) if m[1] > place.rstrip("0123456789")
-    ]
-    at = later[0].start() if later else len(inside)
-    whole = f"{line[1]}>{inside[:at]}{content}{inside[at:]}</row>"
-    return text[: line.start()] + whole + text[line.end() :]
+        content = f"{opened}>{formula}</c>"
+    return text[: match.start()] + content + text[match.end() :]
 
 
 def completed(path: Path, results: Results) -> Results:

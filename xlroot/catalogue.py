@@ -15,7 +15,12 @@ Entry = TypeVar("Entry")
 
 
 def folded(name: str) -> str:
-    """A name without case, spaces, hyphens, dashes, underscores: what two spellings share."""
+    """A name without case, accents, spaces, hyphens, dashes, underscores: what two spellings
+    share."""
+    if not name.isascii():
+        from unicodedata import combining, normalize
+
+        name = "".join(each for each in normalize("NFKD", name) if not combining(each))
     return "".join(letter for letter in name.casefold() if letter not in " -_‐‑–—")
 
 

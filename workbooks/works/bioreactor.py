@@ -62,11 +62,8 @@ def build(book: Workbook) -> list[Page]:
         "g/L",
         shown="0.000000",
     )
-    whole = page.line(
-        "Over the whole range",
-        Ask(f"XLROOT({residual},{substrate},0.01,{feed})"),
-        "g/L",
-        "two roots: refused, and says so",
+    whole = page.sentence(
+        "Over the whole range", Ask(f"XLROOT({residual},{substrate},0.01,{feed})")
     )
     page.heading("What follows")
     cells = page.line(
@@ -84,5 +81,17 @@ def build(book: Workbook) -> list[Page]:
     )
     page.line("Text in the refused cell", f'=IF(ISTEXT({whole}),"no single root","one root")')
     page.heading("The balance over the range")
-    page.put(f"A{page.row}", Ask(f"XLROOT_SCAN({residual},{substrate},0.01,{feed},25)", "scan"))
+    scan = page.table(
+        f"XLROOT_SCAN({residual},{substrate},0.01,{feed},25)",
+        rows=25,
+        shown=("0.0000", "0.0000"),
+        head=("Substrate g/L", "Residual 1/h"),
+    )
+    page.plot(
+        scan,
+        f"C{page.row - 25}",
+        title="Growth less dilution: two steady states",
+        across="substrate, g/L",
+        up="1/h",
+    )
     return [page]

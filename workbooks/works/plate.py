@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from openpyxl import Workbook
 
-from workbooks.page import GIVEN, TRIAL, Ask, Page
+from workbooks.page import FOUND, GIVEN, TRIAL, Ask, Page
 
 FILE = "skin_plate.xlsx"
 WIDTHS = [400, 450, 500, 550, 600, 650]
@@ -53,10 +53,15 @@ def build(book: Workbook) -> list[Page]:
         "safe side: utilisation at or below one",
         shown="0.0000",
     )
+    r = page.row
     page.line(
-        "Enclosure, low and high", Ask(f"XLROOT_BOUNDS({ask})", "2"), "", "", shown="0.00000000"
+        "Enclosure, low and high",
+        Ask(f"XLROOT_BOUNDS({ask})", f"B{r}:C{r}"),
+        note="mm",
+        shown="0.0000000000",
     )
-    page.line("How well known", Ask(f"XLROOT_VERDICT({ask})"))
+    page.put(f"C{r}", None, shown="0.0000000000", fill=FOUND)
+    page.sentence("How well known", Ask(f"XLROOT_VERDICT({ask})"))
     order = page.line(
         "Plate to order", f"=CEILING({found}+1,1)", "mm", "1 mm for corrosion, whole millimetres"
     )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from openpyxl import Workbook
 
-from workbooks.page import GIVEN, TRIAL, Ask, Page
+from workbooks.page import FOUND, GIVEN, TRIAL, Ask, Page
 
 FILE = "pump_main.xlsx"
 AGES = [0, 5, 10, 15, 20, 30, 40, 50]
@@ -71,20 +71,22 @@ def build(book: Workbook) -> list[Page]:
         shown="0.000000",
         name="Friction",
     )
+    r = page.row
     page.line(
-        "Enclosure, low and high", Ask(f"XLROOT_BOUNDS({ask})", "2"), "", shown="0.000000000000"
+        "Enclosure, low and high",
+        Ask(f"XLROOT_BOUNDS({ask})", f"B{r}:C{r}"),
+        shown="0.0000000000000",
     )
-    page.line("How well known", Ask(f"XLROOT_VERDICT({ask})"))
+    page.put(f"C{r}", None, shown="0.0000000000000", fill=FOUND)
+    page.sentence("How well known", Ask(f"XLROOT_VERDICT({ask})"))
     page.heading("What follows from it")
     operating = page.line(
         "Operating flow",
-        f"=XLROOT_AT({flow},{u},{root})",
+        Ask(f"XLROOT_AT({flow},{u},{root})"),
         "m3/s",
         "the flow at the root",
         shown="0.00000",
     )
-    page.asks[operating] = Ask(f"XLROOT_AT({flow},{u},{root})")
-    page.sheet[operating].value = None
     page.line("Operating flow", f"={operating}*3600", "m3/h", shown="0.0")
     page.line("Friction loss", f"={root}*B9/B10*({operating}/B17)^2/(2*B14)", "m", shown="0.00")
     page.line("Hydraulic power", f"=9.81*{operating}*(B15-B16*{operating}^2)", "kW", shown="0.00")
@@ -106,14 +108,11 @@ def build(book: Workbook) -> list[Page]:
     page.line("Motor frequency", f"=ROUND(50*{found},1)", "Hz", shown="0.0")
     page.line(
         "Smallest frequency to set",
-        f'=CEILING(50*XLROOT({short},{ratio},0.5,1.2,"Brent"),0.5)',
+        Ask(f'CEILING(50*XLROOT({short},{ratio},0.5,1.2,"Brent"),0.5)'),
         "Hz",
         "solved inside the formula",
         shown="0.0",
     )
-    last = f"B{page.row - 1}"
-    page.asks[last] = Ask(f'CEILING(50*XLROOT({short},{ratio},0.5,1.2,"Brent"),0.5)')
-    page.sheet[last].value = None
     page.heading("Ageing of the main: one solve a row")
     page.row_of(
         [
@@ -162,11 +161,28 @@ def build(book: Workbook) -> list[Page]:
         "LVA-C-017",
         prepared="I. Tveit",
         revision="B",
+        widths=(12, 22, 22, 22, 22, 4, 4, 4),
     )
     here = f"Main!{residual},Main!{u},0.008,0.1"
     steps.heading("Iterates of a Chandrupatla search")
-    steps.put(f"A{steps.row}", Ask(f'XLROOT_STEPS({here},"Chandrupatla")', "steps"))
-    steps.row += 14
+    steps.table(
+        f'XLROOT_STEPS({here},"Chandrupatla")',
+        rows=12,
+        shown=("0", "0.000000000000000", "0.00E+00", "0.000000000000000", "0.000000000000000"),
+    )
+    steps.row = 22
     steps.heading("The residual over the bracket")
-    steps.put(f"A{steps.row}", Ask(f"XLROOT_SCAN({here},21)", "scan"))
+    scan = steps.table(
+        f"XLROOT_SCAN({here},21)",
+        rows=21,
+        shown=("0.0000", "0.0000"),
+        head=("Factor", "Residual"),
+    )
+    steps.plot(
+        scan,
+        "C24",
+        title="Residual of the operating point",
+        across="friction factor",
+        up="residual",
+    )
     return [page, steps]

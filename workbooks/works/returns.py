@@ -34,7 +34,7 @@ def build(book: Workbook) -> list[Page]:
     found_row = page.row
     page.row += 4
     page.heading("Flows")
-    page.row_of(["Year", "Flow EUR"])
+    page.row_of(["Year", "Flow EUR", "Gas m3"])
     first = page.row
     page.put(f"A{first}", 0)
     page.put(f"B{first}", f"=-{cost}", shown="#,##0")
@@ -82,7 +82,6 @@ def build(book: Workbook) -> list[Page]:
     for year in range(1, YEARS + 1):
         r = first + year
         page.put(f"C{r}", f"=$B${amount[1:]}*(1+$B${rise[1:]})^(A{r}-1)", shown="#,##0")
-    page.sheet[f"C{first - 1}"] = "Gas m3"
     burden = page.line(
         "Upkeep, present worth", f"=-PV(Hurdle,{YEARS},{upkeep})", "EUR", shown="#,##0"
     )

@@ -61,7 +61,7 @@ def build(book: Workbook) -> list[Page]:
     residual = page.line("Residual", f"={total}-{wanted}", "m3", shown="0.0000")
     ask = f'{residual},{level},0,Diameter,"Brent",1E-10'
     found = page.line("Level", Ask(f"XLROOT({ask})"), "m", shown="0.000000")
-    page.line("How well known", Ask(f"XLROOT_VERDICT({ask})"))
+    page.sentence("How well known", Ask(f"XLROOT_VERDICT({ask})"))
     page.line("Level on the gauge", f"=100*{found}/Diameter", "%", shown="0.0")
     page.line("Mass of contents", f"={wanted}*{density}", "kg", shown="0")
     page.line("Pressure at the bottom", f"={density}*9.81*{found}/1000", "kPa", shown="0.00")
