@@ -131,6 +131,9 @@ REFUSED = [
     ("=XLROOT(B3,B1)", {}, "takes 4 to 7 arguments"),
     ('=XLROOT(B3,B1,0,5,,,"left")', {}, "safe side"),
     ("=XLROOT(B3,A1,0,5)", {}, "holds no number"),
+    ("=XLROOT_SCAN(B3,B1,0,5,1000000)", {}, "2 to 10,000 points"),
+    ("=XLROOT_AT(B3,B1:B2,1)", {}, "a reference to one cell"),
+    ("=XLROOT_ALL(B3,B1,0,5)", {}, "no worksheet function XLROOT_ALL"),
 ]
 
 

@@ -44,6 +44,7 @@ from xlroot.values import Grid, Operand, Value  # noqa: E402
 
 WORKS: tuple[ModuleType, ...] = (pump_main, vessel, bioreactor, exchanger, plate, returns)
 _DATES = re.compile(rb"<dcterms:(created|modified)[^>]*>[^<]*</dcterms:\1>")
+_AXIS = re.compile(rb'axId val="(\d+)"')
 EPOCH = (2026, 12, 1, 0, 0, 0)
 Results = dict[str, dict[str, Operand]]
 """What asking cells show, by sheet and address."""
@@ -110,7 +111,16 @@ def _with_formulas(
                 content = _patched(content, asks[sheet], results.get(sheet, {}))
             if item.filename == "docProps/core.xml":
                 content = _DATES.sub(b"", content)
+            if item.filename.startswith("xl/charts/"):
+                content = _with_plain_axes(content)
             new.writestr(zipfile.ZipInfo(item.filename, EPOCH), content, zipfile.ZIP_DEFLATED)
+
+
+def _with_plain_axes(content: bytes) -> bytes:
+    """A chart whose axes are numbered from one; the host numbers them at random."""
+    for n, axis in enumerate(dict.fromkeys(_AXIS.findall(content)), start=1):
+        content = content.replace(b'val="' + axis + b'"', b'val="%d"' % n)
+    return content
 
 
 def _spread(address: str, value: Operand) -> list[tuple[str, Value]]:

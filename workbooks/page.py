@@ -7,8 +7,23 @@ from dataclasses import dataclass, field
 
 from openpyxl import Workbook
 from openpyxl.chart import Reference, ScatterChart, Series
+from openpyxl.chart.axis import ChartLines
 from openpyxl.chart.layout import Layout, ManualLayout
+from openpyxl.chart.shapes import GraphicalProperties
+from openpyxl.chart.text import RichText, Text
+from openpyxl.chart.title import Title
+from openpyxl.drawing.line import LineProperties
+from openpyxl.drawing.spreadsheet_drawing import AnchorMarker, OneCellAnchor
+from openpyxl.drawing.text import (
+    CharacterProperties,
+    Paragraph,
+    ParagraphProperties,
+    RegularTextRun,
+)
+from openpyxl.drawing.xdr import XDRPositiveSize2D
 from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
+from openpyxl.utils.cell import column_index_from_string, coordinate_from_string
+from openpyxl.utils.units import cm_to_EMU
 from openpyxl.workbook.defined_name import DefinedName
 from openpyxl.worksheet.worksheet import Worksheet
 
@@ -19,7 +34,7 @@ FACE = "Arial"
 PLAIN = Font(name=FACE, size=10)
 NOTE = Font(name=FACE, size=9, italic=True, color=QUIET)
 COLUMNS = "ABCDEFGH"
-WIDTHS = (32, 14, 12, 14, 12, 12, 14, 12)
+WIDTHS = (32, 16, 16, 12, 12, 12, 14, 12)
 GIVEN = PatternFill("solid", fgColor="FFF7E0")
 TRIAL = PatternFill("solid", fgColor="E3EEF6")
 FOUND = PatternFill("solid", fgColor="E6F1E3")
@@ -109,7 +124,7 @@ class Page:
         self.put(address, content, shown=shown, fill=fill)
         self.sheet[f"C{self.row}"] = unit
         self.sheet[f"C{self.row}"].font = PLAIN
-        self.sheet[f"C{self.row}"].alignment = Alignment(indent=1)
+        self.sheet[f"C{self.row}"].alignment = Alignment(horizontal="left", indent=1)
         if note:
             self.sheet[f"D{self.row}"] = note
             self.sheet[f"D{self.row}"].font = NOTE
@@ -119,14 +134,14 @@ class Page:
         self.row += 1
         return address
 
-    def sentence(self, label: str, content: Content | Ask) -> str:
-        """A line whose value is a text of up to two lines over the rest of the page."""
+    def sentence(self, label: str, content: Content | Ask, *, lines: int = 1) -> str:
+        """A line whose value is a text over the rest of the page."""
         row = self.row
         address = self.line(label, content)
         self.sheet[address].alignment = Alignment(wrap_text=True, vertical="top")
         self.sheet[f"A{row}"].alignment = Alignment(vertical="top")
         self.sheet.merge_cells(f"B{row}:H{row}")
-        self.sheet.row_dimensions[row].height = 27
+        self.sheet.row_dimensions[row].height = 1 + 13 * lines
         return address
 
     def put(
@@ -177,13 +192,17 @@ class Page:
         """A chart of a table's second column against its first."""
         first, last = (int(end[1:]) for end in filled.split(":"))
         chart = ScatterChart()
-        chart.title, chart.legend, chart.style = title, None, 2
+        chart.title, chart.legend, chart.style = _lettered(title, 1100), None, 2
         chart.scatterStyle = "lineMarker"
         chart.layout = Layout(manualLayout=ManualLayout(x=0.12, y=0.14, w=0.82, h=0.68))
-        chart.x_axis.title, chart.y_axis.title = across, up
+        chart.x_axis.title, chart.y_axis.title = _lettered(across, 900), _lettered(up, 900)
         chart.x_axis.delete = chart.y_axis.delete = False
         chart.x_axis.tickLblPos = "low"
         chart.x_axis.majorGridlines = None
+        chart.y_axis.majorGridlines = ChartLines(
+            spPr=GraphicalProperties(ln=LineProperties(solidFill="D5DDE2", w=6350))
+        )
+        chart.x_axis.number_format = chart.y_axis.number_format = "General"
         line = Series(
             Reference(self.sheet, min_col=2, min_row=first, max_row=last),
             Reference(self.sheet, min_col=1, min_row=first, max_row=last),
@@ -193,8 +212,13 @@ class Page:
         line.graphicalProperties.line.solidFill = INK
         line.graphicalProperties.line.width = 19050
         chart.series.append(line)
-        chart.width, chart.height = 15.5, 8.5
-        self.sheet.add_chart(chart, anchor)
+        column, row = coordinate_from_string(anchor)
+        corner = AnchorMarker(
+            col=column_index_from_string(column) - 1, colOff=cm_to_EMU(0.4), row=row - 1
+        )
+        size = XDRPositiveSize2D(cm_to_EMU(14.0), cm_to_EMU(8.5))
+        chart.anchor = OneCellAnchor(_from=corner, ext=size)
+        self.sheet.add_chart(chart)
 
     def row_of(self, texts: list[str]) -> None:
         """A table's heading."""
@@ -217,6 +241,13 @@ class Page:
         self.sheet.merge_cells(f"A{self.row}:H{self.row}")
         self.sheet.row_dimensions[self.row].height = 13 * (1 + len(text) // 120)
         self.row += 1
+
+
+def _lettered(text: str, size: int) -> Title:
+    """A chart's title in the sheet's ink; `size` in hundredths of a point."""
+    ink = CharacterProperties(sz=size, b=False, solidFill=INK)
+    line = Paragraph(pPr=ParagraphProperties(defRPr=ink), r=[RegularTextRun(rPr=ink, t=text)])
+    return Title(tx=Text(rich=RichText(p=[line])), overlay=False)
 
 
 def _print_setup(sheet: Worksheet, number: str) -> None:

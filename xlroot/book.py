@@ -102,6 +102,8 @@ class Book:
     digest: str = ""
     """SHA-256 of the file, in hexadecimal; empty for a book that is no file."""
     starts_1904: bool = False
+    rounds_as_shown: bool = False
+    """Whether the host rounds every value to the digits that its format shows."""
     _folded: dict[str, str] = field(init=False, repr=False, compare=False)
 
     def __post_init__(self) -> None:

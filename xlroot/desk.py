@@ -53,6 +53,11 @@ def prepare(desk: Desk, residual: Cell, unknown: Cell, *, recalculate: bool = Fa
     Raises IndependentError where no formulas run between them, Unsupported, with the cell, where
     the chain cannot be evaluated faithfully.
     """
+    if desk.book.rounds_as_shown:
+        raise Unsupported(
+            "the workbook is set to calculate with the precision that cells display, which xlroot "
+            "does not follow; set it to full precision, recalculate and save"
+        )
     held = Ledger(desk.bindings, Policy.COMPUTED) if recalculate else desk.present
     chain = trace(desk.bindings, held, residual, unknown)
     program = Program(chain, held)

@@ -163,13 +163,12 @@ class Program:
         if self.sorts[result] is not Sort.NUMBER:
             lines.append(f"r = outcome({result})")
             result = "r"
-        guards = list(dict.fromkeys(each for each in emitter.guards if each != result))
-        starting = [each for each in guards if each[0] in "gl"]
+        guards = _assigned(emitter.guards, lines)
+        starting = [each for each in guards if each in emitter.conditional]
         body = [f"{each} = 0.0" for each in starting] + lines
-        checks = [f"-1e999 < {result} < 1e999"]
-        if guards:
-            checks.append(f"-1e999 < {' + '.join(guards)} < 1e999")
-        body += [f"if {' and '.join(checks)}:", f"    return {result}"]
+        # A difference with itself, and a product with zero, are zero for finite numbers alone.
+        others = f"*({' + '.join(guards)})" if guards else ""
+        body += [f"if {result} - {result} == 0.0{others}:", f"    return {result}"]
         self.source = "\n".join(
             [
                 "def residual(v0):",
@@ -283,9 +282,9 @@ class Program:
             if expr.grows:
                 growing.add(name)
         result = self.variables[self.chain.residual]
-        guards = list(dict.fromkeys(emitter.guards))
+        guards = _assigned(emitter.guards, lines)
         lines = _freed(lines, keep={result, *guards})
-        starting = [f"{each} = 0.0" for each in guards if each[0] in "gl"]
+        starting = [f"{each} = 0.0" for each in guards if each in emitter.conditional]
         ending = f"return {result}, {' + '.join([result, *guards])}"
         body = [f"    {line}" for line in (*starting, *lines, ending)]
         exec(
@@ -320,6 +319,12 @@ class Program:
             else:
                 result[position] = value
         return result, faults
+
+
+def _assigned(guards: list[str], lines: list[str]) -> list[str]:
+    """The guards that the code assigns; attempts that were given up leave others behind."""
+    text = "\n".join(lines)
+    return [each for each in dict.fromkeys(guards) if each[0] == "v" or f"({each} := " in text]
 
 
 def _freed(lines: list[str], keep: set[str]) -> list[str]:

@@ -13,6 +13,7 @@ from enum import Enum
 from typing import Protocol
 
 from xlroot.cells import Cell
+from xlroot.errors import QuestionError
 from xlroot.question import Question
 from xlroot.record import Record
 from xlroot.stopping import SafeSide
@@ -80,6 +81,10 @@ class WorksheetFunction:
     solves: bool = True
     """Whether it asks a question that leaves a record."""
 
+
+CUSTOMARY_POINTS = 41
+MOST_POINTS = 10_000
+"""Points of a scan, where none are stated and at most."""
 
 REFUSAL = "xlroot: "
 """How the text of a refused solve begins."""
@@ -196,8 +201,10 @@ def _shown(number: float | None) -> Value:
 
 def _scan(solver: Solver, given: Given) -> Operand:
     points = given.get("points")
-    count = int(points) if isinstance(points, float) and points >= 2 else 41
-    return Grid(solver.samples(question_of(given), count))
+    count = CUSTOMARY_POINTS if points is None else points
+    if not isinstance(count, float | int) or not 2 <= count <= MOST_POINTS:
+        raise QuestionError(f"a scan takes 2 to {MOST_POINTS:,} points")
+    return Grid(solver.samples(question_of(given), int(count)))
 
 
 def _at(solver: Solver, given: Given) -> Operand:

@@ -6,10 +6,12 @@ from pathlib import Path
 
 import openpyxl
 import pytest
+from CoolProp.CoolProp import PropsSI
 
 import xlroot
 from workbooks.build import WORKS, pages_of
 from workbooks.independent import ROOTS, Place
+from workbooks.works import exchanger
 from xlroot.cells import Cell
 from xlroot.depend import Bindings
 from xlroot.docket import Docket
@@ -101,6 +103,20 @@ def test_saved_texts_and_tables_are_what_xlroot_answers(
                     assert saved == pytest.approx(value, rel=1e-10, abs=1e-12)
                 else:
                     assert saved == value
+
+
+def test_table_of_the_heat_exchanger_is_iapws_95() -> None:
+    """CoolProp's liquid water (Wagner and Pruss 2002) at saturation, at 0 °C the triple point."""
+    for celsius, listed in exchanger.TABLE:
+        kelvin = max(celsius, 0.01) + 273.15
+        assert listed == round(PropsSI("C", "T", kelvin, "Q", 0, "Water") / 1000, 3)
+
+
+def test_density_of_the_tank_is_that_of_methanol() -> None:
+    """CoolProp at 20 °C and 101325 Pa (de Reuck and Craven 1993), in whole kg/m3."""
+    book = xlroot.open(FOLDER / "vessel_level.xlsx")
+    density = PropsSI("D", "T", 293.15, "P", 101325, "Methanol")
+    assert book.saved(book.cell("B12", "Tank")) == round(density)
 
 
 @pytest.mark.parametrize("work", WORKS, ids=lambda work: work.FILE)

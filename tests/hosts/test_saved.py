@@ -215,6 +215,17 @@ def test_shared_formulas_texts_and_faults(tmp_path: Path) -> None:
     assert xlroot.evaluate(book, "B2") == 1.0
 
 
+def test_precision_as_displayed_is_refused(tmp_path: Path) -> None:
+    workbook = (
+        f'<workbook xmlns="{MAIN}" xmlns:r="{OFFICE}"><sheets><sheet name="S" sheetId="1" '
+        'r:id="r1"/></sheets><calcPr fullPrecision="0"/></workbook>'
+    )
+    book = read_book(package(tmp_path / "shown.xlsx", sheet_xml(PLAIN), workbook=workbook))
+    record = xlroot.solve(book, residual="B1", unknown="A1", low=-1, high=1)
+    assert record.refused
+    assert "precision that cells display" in record.verdict.reason
+
+
 BROKEN = {
     "missing": (None, "there is no file"),
     "text": (b"just text", "is no .xlsx"),

@@ -63,7 +63,7 @@ def build(book: Workbook) -> list[Page]:
         shown="0.000000",
     )
     whole = page.sentence(
-        "Over the whole range", Ask(f"XLROOT({residual},{substrate},0.01,{feed})")
+        "Over the whole range", Ask(f"XLROOT({residual},{substrate},0.01,{feed})"), lines=2
     )
     page.heading("What follows")
     cells = page.line(

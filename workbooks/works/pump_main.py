@@ -23,7 +23,7 @@ def build(book: Workbook) -> list[Page]:
     page.heading("Given")
     page.line("Static lift", 38, "m", "Hovde tank 112.4 m, wells 74.4 m", fill=GIVEN, name="Lift")
     page.line("Length of main", 1850, "m", fill=GIVEN)
-    page.line("Inside diameter", 0.2545, "m", "PE 100 SDR 11, OD 315", fill=GIVEN)
+    page.line("Inside diameter", 0.2545, "m", "PE 100, OD 315, bore as measured", fill=GIVEN)
     page.line("Roughness", 0.00005, "m", "new pipe", shown="0.0E+00", fill=GIVEN)
     page.line(
         "Kinematic viscosity", 0.00000131, "m2/s", "water at 10 °C", shown="0.00E+00", fill=GIVEN

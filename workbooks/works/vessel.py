@@ -32,9 +32,7 @@ def build(book: Workbook) -> list[Page]:
         name="Head_depth",
     )
     page.line("Radius", "=Diameter/2", "m", shown="0.000", name="Radius")
-    density = page.line(
-        "Density of methanol", 791, "kg/m3", "at 20 °C, CRC Handbook (from memory)", fill=GIVEN
-    )
+    density = page.line("Density of methanol", 791, "kg/m3", "at 20 °C and 1 atm", fill=GIVEN)
     page.line(
         "Volume of the full vessel",
         f"=PI()*Radius^2*{length}+4/3*PI()*Radius^2*Head_depth",

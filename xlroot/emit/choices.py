@@ -27,7 +27,11 @@ def _if(emitter: Emitter, node: Call) -> Expr:
 
 
 def _chosen(emitter: Emitter, condition: str, branches: tuple[Node, ...]) -> Expr:
-    yes, no = (emitter.emit(_filled(each)) for each in branches)
+    emitter.branching += 1
+    try:
+        yes, no = (emitter.emit(_filled(each)) for each in branches)
+    finally:
+        emitter.branching -= 1
     sort = yes.sort if yes.sort is no.sort else Sort.ANY
     if emitter.dialect.vector and sort not in (Sort.NUMBER, Sort.LOGICAL):
         raise Opaque
@@ -94,6 +98,8 @@ def _let(emitter: Emitter, node: Call) -> Expr:
             if not expr.fixed:
                 variable = f"l{len(emitter.namespace)}"
                 emitter.namespace[variable] = None
+                if emitter.branching:
+                    emitter.conditional.add(variable)
                 parts.append(f"({variable} := {expr.text})")
                 if expr.grows:
                     emitter.growing.add(variable)

@@ -45,6 +45,11 @@ class Emitter:
     vectorised: Callable[[str, tuple[str, ...]], Callable[..., object]] | None = None
     """For a vector dialect: makes a function over vectors of an element's text."""
     guards: list[str] = field(default_factory=list)
+    """Names whose values have to be finite at the end."""
+    branching: int = 0
+    """How many conditions the text being written stands behind."""
+    conditional: set[str] = field(default_factory=set)
+    """Guards and locals that are assigned behind a condition, and so perhaps not at all."""
     variables_in_scope: dict[str, Expr] = field(default_factory=dict)
     cell: Cell = _NOWHERE
     _moving: dict[Block, tuple[Cell, ...]] = field(default_factory=dict)
@@ -198,8 +203,8 @@ class Emitter:
         operand = self.emit(node.operand)
         number = self.number(operand)
         if node.operator == "%":
-            return Expr(f"{self.enclosed(number)}/100.0", Sort.NUMBER, Level.PRODUCT, operand.grows)
-        return Expr(f"(-{self.enclosed(number)})", Sort.NUMBER, grows=operand.grows)
+            return Expr(f"{self.enclosed(number)}/100.0", Sort.NUMBER, Level.PRODUCT, number.grows)
+        return Expr(f"(-{self.enclosed(number)})", Sort.NUMBER, grows=number.grows)
 
     def _binary(self, node: Binary) -> Expr:
         pending: list[tuple[str, Node]] = []
@@ -301,6 +306,8 @@ class Emitter:
             return expr.text
         guard = f"g{len(self.guards)}"
         self.guards.append(guard)
+        if self.branching:
+            self.conditional.add(guard)
         return f"({guard} := {expr.text})"
 
 

@@ -53,6 +53,7 @@ def read_book(path: str | Path) -> Book:
         tuple(tables),
         package.digest,
         content.starts_1904,
+        content.rounds_as_shown,
     )
 
 
@@ -63,6 +64,7 @@ class _Workbook:
         self.sheets: list[tuple[str, str]] = []
         self.names: list[tuple[str, str, int | None]] = []
         self.starts_1904 = False
+        self.rounds_as_shown = False
         self._name: tuple[str, int | None] | None = None
         self._text: list[str] = []
 
@@ -76,6 +78,8 @@ class _Workbook:
             self.sheets.append((attributes.get("name", ""), identifier))
         elif tag == "workbookPr":
             self.starts_1904 = attributes.get("date1904", "0") in ("1", "true", "on")
+        elif tag == "calcPr":
+            self.rounds_as_shown = attributes.get("fullPrecision", "1") in ("0", "false", "off")
         elif tag == "definedName":
             scope = attributes.get("localSheetId")
             self._name = attributes.get("name", ""), None if scope is None else int(scope)
