@@ -77,6 +77,7 @@ class Record:
     statement: str
     label: str
     """The words beside the cell that asked, or beside the unknown."""
+    unknown_label: str
     unit: str
     residual_label: str
     residual_unit: str

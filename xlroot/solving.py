@@ -160,6 +160,7 @@ def _record(
         question=question,
         statement=_statement(book, question),
         label=_own_label(book, cell, unknown),
+        unknown_label=label_of(book, unknown),
         unit=unit_of(book, unknown),
         residual_label=label_of(book, residual),
         residual_unit=unit_of(book, residual),

@@ -53,7 +53,7 @@ class Argument:
     presence: Presence = Presence.REQUIRED
 
 
-class Solver(Protocol):
+class Answers(Protocol):
     """What a body needs of the place where it runs."""
 
     def record(self, question: Question) -> Record: ...
@@ -66,7 +66,7 @@ class Solver(Protocol):
 Given = dict[str, Cell | float | str | None]
 """Arguments by name, as read; None for one that was left out."""
 
-Body = Callable[[Solver, Given], Operand]
+Body = Callable[[Answers, Given], Operand]
 
 
 @dataclass(frozen=True, slots=True)
@@ -135,26 +135,26 @@ def question_of(given: Given) -> Question:
     )
 
 
-def _root(solver: Solver, given: Given) -> Operand:
-    record = solver.record(question_of(given))
+def _root(answers: Answers, given: Given) -> Operand:
+    record = answers.record(question_of(given))
     return REFUSAL + record.verdict.reason if record.root is None else record.root
 
 
-def _bounds(solver: Solver, given: Given) -> Operand:
-    verdict = solver.record(question_of(given)).verdict
+def _bounds(answers: Answers, given: Given) -> Operand:
+    verdict = answers.record(question_of(given)).verdict
     if verdict.low is None or verdict.high is None:
         text = REFUSAL + verdict.reason
         return Grid(((text, text),))
     return Grid(((verdict.low, verdict.high),))
 
 
-def _verdict(solver: Solver, given: Given) -> Operand:
-    verdict = solver.record(question_of(given)).verdict
+def _verdict(answers: Answers, given: Given) -> Operand:
+    verdict = answers.record(question_of(given)).verdict
     return f"{verdict.status.value}: {verdict.reason}"
 
 
-def _record(solver: Solver, given: Given) -> Operand:
-    record = solver.record(question_of(given))
+def _record(answers: Answers, given: Given) -> Operand:
+    record = answers.record(question_of(given))
     rows: list[tuple[str, Value]] = [
         ("statement", record.statement),
         ("unknown", str(record.question.unknown)),
@@ -183,8 +183,8 @@ def _count(number: int | None) -> float | None:
     return None if number is None else float(number)
 
 
-def _steps(solver: Solver, given: Given) -> Operand:
-    record = solver.record(question_of(given))
+def _steps(answers: Answers, given: Given) -> Operand:
+    record = answers.record(question_of(given))
     if not record.iterates:
         return Grid(((REFUSAL + record.verdict.reason,),))
     header: tuple[Value, ...] = ("n", "x", "residual", "low", "high")
@@ -199,20 +199,20 @@ def _shown(number: float | None) -> Value:
     return "" if number is None else number
 
 
-def _scan(solver: Solver, given: Given) -> Operand:
+def _scan(answers: Answers, given: Given) -> Operand:
     points = given.get("points")
     count = CUSTOMARY_POINTS if points is None else points
     if not isinstance(count, float | int) or not 2 <= count <= MOST_POINTS:
         raise QuestionError(f"a scan takes 2 to {MOST_POINTS:,} points")
-    return Grid(solver.samples(question_of(given), int(count)))
+    return Grid(answers.samples(question_of(given), int(count)))
 
 
-def _at(solver: Solver, given: Given) -> Operand:
+def _at(answers: Answers, given: Given) -> Operand:
     cell, unknown, x = given["cell"], given["unknown"], given["x"]
     assert isinstance(cell, Cell)
     assert isinstance(unknown, Cell)
     assert isinstance(x, float)
-    return solver.content(cell, unknown, x)
+    return answers.content(cell, unknown, x)
 
 
 FUNCTIONS: tuple[WorksheetFunction, ...] = (

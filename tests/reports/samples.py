@@ -73,6 +73,7 @@ def solved(
             "imbalance of the friction law (Rising main!B11) is zero."
         ),
         label="friction factor",
+        unknown_label="friction factor, trial",
         unit="",
         residual_label="imbalance of the friction law",
         residual_unit="",
@@ -189,6 +190,7 @@ def hostile() -> Record:
     return replace(
         solved(),
         label=HOSTILE[0],
+        unknown_label=HOSTILE[0],
         unit=HOSTILE[3],
         statement=HOSTILE[1],
         residual_label=HOSTILE[7],
@@ -212,6 +214,7 @@ def with_nothing_known() -> Record:
         refused_outright(),
         cell=None,
         label="",
+        unknown_label="",
         present=None,
         tolerance=math.nan,
         fingerprint="none",

@@ -69,6 +69,11 @@ def sought(record: Record) -> str:
     return record.label.strip() or str(record.question.unknown)
 
 
+def varied(record: Record) -> str:
+    """The words beside the unknown, or its address: what an axis of trial values is called."""
+    return record.unknown_label.strip() or str(record.question.unknown)
+
+
 def place(record: Record) -> str:
     """Where the solve stands: the cell that asked, or else the unknown."""
     return str(record.cell or record.question.unknown)

@@ -29,6 +29,7 @@ def plain(record: Record) -> dict[str, Plain]:
     return {
         "cell": None if record.cell is None else str(record.cell),
         "label": _text(record.label),
+        "unknown_label": _text(record.unknown_label),
         "unit": _text(record.unit),
         "residual": str(asked.residual),
         "residual_label": _text(record.residual_label),

@@ -10,6 +10,7 @@ from collections.abc import Sequence
 from typing import TYPE_CHECKING, NamedTuple
 
 from xlroot.record import Record
+from xlroot.reports import contents
 from xlroot.reports.curve import Curve, Narrowing
 from xlroot.reports.sheet import ink
 from xlroot.reports.sheet.entries import as_number
@@ -51,7 +52,7 @@ class Charts:
     def residual(self, curve: Curve, record: Record, place: Place) -> None:
         """The residual over the bracket, with the iterates and the root marked."""
         chart = self._chart()
-        label = printable(record.label, 60) or "unknown"
+        label = printable(contents.varied(record), 60)
         _axis(chart.x_axis, _titled(label, record.unit), curve.left, curve.right)
         bottom, top = (curve.bottom, curve.top) if curve.clipped else (None, None)
         _axis(chart.y_axis, _titled("residual", record.residual_unit), bottom, top)
