@@ -131,6 +131,11 @@ REFUSED = [
     ("=XLROOT(B3,B1)", {}, "takes 4 to 7 arguments"),
     ('=XLROOT(B3,B1,0,5,,,"left")', {}, "safe side"),
     ("=XLROOT(B3,A1,0,5)", {}, "holds no number"),
+    (
+        "=XLROOT(B9,B1,0,5)",
+        {"B8": "=XLROOT(B3,C8,0,5)+B1", "C8": 1, "B9": "=B8-B1*2"},
+        "a solve inside a solve",
+    ),
     ("=XLROOT_SCAN(B3,B1,0,5,1000000)", {}, "2 to 10,000 points"),
     ("=XLROOT_AT(B3,B1:B2,1)", {}, "a reference to one cell"),
     ("=XLROOT_ALL(B3,B1,0,5)", {}, "no worksheet function XLROOT_ALL"),

@@ -63,6 +63,8 @@ CHAINS: list[tuple[str, dict[str, Content]]] = [
     ("a text that does not", {"A2": '=IF(A1>1,"much",A1)', "A3": "=A2+1"}),
     ("overflow that would vanish", {"A2": "=A1*1E308*1E10", "A3": "=1/A2"}),
     ("overflow inside a formula", {"A3": "=1/(A1*1E308*1E10)+A1"}),
+    ("overflow through a root", {"A3": "=1/SQRT(A1*1E308*1E10)+A1"}),
+    ("overflow through an extreme", {"A3": "=MIN(A1*1E308*1E10,3)+1/MAX(A1*1E308*1E10,1)"}),
     ("overflow in a comparison", {"A3": "=IF(A1*1E308*1E10>0,1,2)"}),
     ("logicals as numbers", {"A2": "=A1>1", "A3": "=A2*2+(A1<0)"}),
     ("AND, OR, NOT", {"A3": "=IF(AND(A1>0,NOT(A1>2)),1,2)+IF(OR(A1<-1,A1>3),10,20)"}),
@@ -106,6 +108,15 @@ def test_array_constants_work_element_by_element_in_a_plain_formula() -> None:
     contents: dict[str, Content] = {"C1": 1, "C2": 5, "C3": 3, "A1": 2}
     contents["A3"] = "=SUM(A1*{1,2,3})+SUM(LARGE(C1:C3,{1,2}))+SUM(A1^{1,2})"
     assert program_of(contents, "A3", "A1").real(2.0) == 12.0 + 8.0 + 6.0
+
+
+def test_a_held_part_that_is_refused_matters_only_where_it_is_met() -> None:
+    contents: dict[str, Content] = {"A1": 1, "B1": 3, "B2": 1, "B3": 2}
+    contents["A3"] = "=IF(A1>2,MATCH(2.5,B1:B3,1),A1*2)"
+    program = program_of(contents, "A3", "A1")
+    assert program.real(1.5) == 3.0
+    with pytest.raises(Unsupported, match="Sheet1!A3"):
+        program.real(3.0)
 
 
 def test_constant_parts_are_folded() -> None:

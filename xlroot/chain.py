@@ -88,8 +88,8 @@ def _step(cell: Cell, dependence: Dependence, ledger: Ledger) -> Step:
     for each in walk(node):
         if isinstance(each, Call) and each.name.startswith(OWN_PREFIX):
             raise Unsupported(
-                f"lies on the chain and itself holds {each.name} of the same unknown's "
-                "calculation; solve one inside the other in separate cells",
+                f"lies on the chain and itself holds {each.name}: a solve inside a solve is not "
+                "evaluated; give each solve an unknown of its own",
                 str(cell),
             )
     if any(computes_reference(each) for each in walk(node)):

@@ -9,6 +9,7 @@ computes the chain again for that trial value, so the answer is always the inter
 from __future__ import annotations
 
 import re
+import sys
 from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -144,6 +145,7 @@ class Program:
             variables=self.variables,
             sorts=sorts,
             growing=growing,
+            bounds={"v0": sys.float_info.max},
             part=self._part,
             **others,
         )
@@ -158,6 +160,8 @@ class Program:
             self.sorts[name] = expr.sort
             if expr.grows:
                 self.growing.add(name)
+            if expr.sort is Sort.NUMBER:
+                emitter.bounds[name] = expr.bound
             lines.append(f"{name} = {expr.text}")
         result = self.variables[self.chain.residual]
         if self.sorts[result] is not Sort.NUMBER:
@@ -281,6 +285,8 @@ class Program:
             sorts[name] = expr.sort
             if expr.grows:
                 growing.add(name)
+            if expr.sort is Sort.NUMBER:
+                emitter.bounds[name] = expr.bound
         result = self.variables[self.chain.residual]
         guards = _assigned(emitter.guards, lines)
         lines = _freed(lines, keep={result, *guards})

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+import math
 import re
 from typing import TYPE_CHECKING
 
 from xlroot import functions
 from xlroot.cells import Block, Cell
 from xlroot.emit.choices import CHOICES
-from xlroot.emit.expression import Expr, Level, Opaque, Sort
+from xlroot.emit.expression import LARGEST, Expr, Level, Opaque, Sort
 from xlroot.emit.lookups import LOOKUPS
 from xlroot.formula import Area, Array, Call, Literal, Node, Omitted
 from xlroot.functions.entry import Entry, Fold, Gives, Takes
@@ -33,6 +34,16 @@ _FOLDS = {
     Fold.PRODUCT: "product",
     Fold.MINIMUM: "least",
     Fold.MAXIMUM: "most_of",
+}
+_LIMITS = {
+    "sin({0})": 1.0,
+    "cos({0})": 1.0,
+    "tanh({0})": 1.0,
+    "atan({0})": 1.6,
+    "asin({0})": 1.6,
+    "acos({0})": 3.2,
+    "ln({0})": 750.0,
+    "log10({0})": 330.0,
 }
 _KEEPS_INFINITY = re.compile(r"(?:sqrt|ln|log10|absolute)\(\{0\}\)")
 _EMPTY = {Takes.NUMBER: "0.0", Takes.TEXT: '""', Takes.LOGICAL: "False"}
@@ -61,7 +72,11 @@ def _formed(emitter: Emitter, form: str, node: Call) -> Expr:
         texts = [emitter.kept(each) for each in numbers]
     # Over vectors a function does not raise outside its domain: its NaN has to be noticed.
     grows = emitter.dialect.vector or any(sign in form for sign in "+-*/")
-    return Expr(f"({form.format(*texts)})", Sort.NUMBER, grows=grows)
+    bound = math.inf if grows else _LIMITS.get(form, LARGEST)
+    if form == "sqrt({0})" and not grows:
+        bound = math.sqrt(numbers[0].bound)
+    grows = grows or (bool(_KEEPS_INFINITY.fullmatch(form)) and numbers[0].grows)
+    return Expr(f"({form.format(*texts)})", Sort.NUMBER, grows=grows, bound=bound)
 
 
 def _fold(emitter: Emitter, entry: Entry, node: Call) -> Expr:
@@ -111,7 +126,7 @@ def _terms(emitter: Emitter, block: Block) -> list[Expr]:
             if isinstance(value, (float, Fault)):
                 terms.append(emitter.number(emitter.fixed(value)))
         elif emitter.sorts[name] is Sort.NUMBER:
-            terms.append(Expr(name, Sort.NUMBER, grows=name in emitter.growing))
+            terms.append(emitter.emit(Area(Block.of(cell))))
         elif emitter.sorts[name] is Sort.ANY:
             raise Opaque
     return terms

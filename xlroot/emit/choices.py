@@ -36,7 +36,8 @@ def _chosen(emitter: Emitter, condition: str, branches: tuple[Node, ...]) -> Exp
     if emitter.dialect.vector and sort not in (Sort.NUMBER, Sort.LOGICAL):
         raise Opaque
     text = emitter.dialect.choose.format(condition, yes.text, no.text)
-    return Expr(text, sort, grows=yes.grows or no.grows)
+    grows = yes.grows or no.grows
+    return Expr(text, sort, grows=grows, bound=max(yes.bound, no.bound))
 
 
 def _filled(node: Node) -> Node:
@@ -103,7 +104,7 @@ def _let(emitter: Emitter, node: Call) -> Expr:
                 parts.append(f"({variable} := {expr.text})")
                 if expr.grows:
                     emitter.growing.add(variable)
-                expr = Expr(variable, expr.sort, grows=expr.grows)
+                expr = Expr(variable, expr.sort, grows=expr.grows, bound=expr.bound)
             emitter.variables_in_scope[name.name] = expr
         body = emitter.emit(node.arguments[-1])
     finally:

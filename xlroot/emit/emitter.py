@@ -10,7 +10,8 @@ from xlroot.bind import walk
 from xlroot.cells import Block, Cell
 from xlroot.chain import Chain
 from xlroot.emit.calls import call
-from xlroot.emit.expression import VARIABLE, Dialect, Expr, Level, Opaque, Sort, Whole
+from xlroot.emit.expression import LARGEST, VARIABLE, Dialect, Expr, Level, Opaque, Sort, Whole
+from xlroot.errors import Unsupported
 from xlroot.formula import Area, Binary, Call, Local, Node, Unary
 from xlroot.interpret import Scope, by_element, evaluate, single
 from xlroot.kinds import array as array_kind
@@ -38,6 +39,7 @@ class Emitter:
     variables: dict[Cell, str]
     sorts: dict[str, Sort]
     growing: set[str]
+    bounds: dict[str, float]
     part: Callable[[Node, Cell, tuple[Cell, ...]], Callable[..., Value]]
     """Makes a function of some chain cells' values that lets the interpreter find a node."""
     element: Emitter | None = None
@@ -105,7 +107,11 @@ class Emitter:
     def emit(self, node: Node) -> Expr:
         """The node's text; Opaque only where it holds a local variable it cannot pass on."""
         if not self.moves(node):
-            return self.fixed(self.constant(node))
+            try:
+                return self.fixed(self.constant(node))
+            except Unsupported:
+                # It may stand in a branch that is never taken: it is refused where it is met.
+                return self._by_part(node)
         try:
             return self._emit(node)
         except Opaque:
@@ -128,7 +134,8 @@ class Emitter:
             sort = Sort.NUMBER
         elif isinstance(value, str):
             sort = Sort.TEXT
-        return Expr(self.spelled(value), sort, fixed=True, value=value)
+        bound = abs(value) if isinstance(value, float) else math.inf
+        return Expr(self.spelled(value), sort, fixed=True, value=value, bound=bound)
 
     def spelled(self, value: Value) -> str:
         """A constant's text."""
@@ -195,7 +202,8 @@ class Emitter:
                 return self.fixed(Fault.VALUE)
             return self.emit(Area(Block.of(lined_up)))
         name = self.variables[block.first]
-        return Expr(name, self.sorts[name], grows=name in self.growing)
+        bound = self.bounds.get(name, math.inf)
+        return Expr(name, self.sorts[name], grows=name in self.growing, bound=bound)
 
     def _unary(self, node: Unary) -> Expr:
         if node.operator in "@+":
@@ -203,8 +211,11 @@ class Emitter:
         operand = self.emit(node.operand)
         number = self.number(operand)
         if node.operator == "%":
-            return Expr(f"{self.enclosed(number)}/100.0", Sort.NUMBER, Level.PRODUCT, number.grows)
-        return Expr(f"(-{self.enclosed(number)})", Sort.NUMBER, grows=number.grows)
+            text = f"{self.enclosed(number)}/100.0"
+            bound = number.bound / 100.0
+            return Expr(text, Sort.NUMBER, Level.PRODUCT, number.grows, bound=bound)
+        text = f"(-{self.enclosed(number)})"
+        return Expr(text, Sort.NUMBER, grows=number.grows, bound=number.bound)
 
     def _binary(self, node: Binary) -> Expr:
         pending: list[tuple[str, Node]] = []
@@ -230,22 +241,31 @@ class Emitter:
 
     def _arithmetic(self, operator: str, left: Expr, right: Expr) -> Expr:
         a, b = self.number(left), self.number(right)
-        if operator in "+-":
-            other = f"({b.text})" if b.level is Level.SUM else b.text
-            return Expr(f"{a.text} {operator} {other}", Sort.NUMBER, Level.SUM, grows=True)
         if operator == "^":
             return self._power(a, b)
+        bound = _bound(operator, a, b)
+        grows = a.grows or b.grows or not bound < math.inf
+        if operator in "+-":
+            other = f"({b.text})" if b.level is Level.SUM else b.text
+            text = f"{a.text} {operator} {other}"
+            return Expr(text, Sort.NUMBER, Level.SUM, grows, bound=bound)
         head = f"({a.text})" if a.level is Level.SUM else a.text
-        if operator == "*":
-            return Expr(f"{head}*{self.enclosed(b)}", Sort.NUMBER, Level.PRODUCT, grows=True)
-        return Expr(f"{head}/{self.kept(b)}", Sort.NUMBER, Level.PRODUCT, grows=True)
+        tail = self.enclosed(b) if operator == "*" else self.kept(b)
+        return Expr(f"{head}{operator}{tail}", Sort.NUMBER, Level.PRODUCT, grows, bound=bound)
 
     def _power(self, base: Expr, exponent: Expr) -> Expr:
         if exponent.fixed and exponent.value == 2.0 and VARIABLE.fullmatch(base.text):
-            return Expr(f"{base.text}*{base.text}", Sort.NUMBER, Level.PRODUCT, grows=True)
+            bound = base.bound * base.bound
+            grows = base.grows or not bound < math.inf
+            text = f"{base.text}*{base.text}"
+            return Expr(text, Sort.NUMBER, Level.PRODUCT, grows, bound=bound)
+        # Over floats a power raises where it overflows; over vectors it does not.
+        vector = self.dialect.vector
         if exponent.fixed and isinstance(exponent.value, float) and exponent.value > 0.0:
-            return Expr(f"raised({base.text}, {exponent.text})", Sort.NUMBER, grows=True)
-        return Expr(f"power({self.kept(base)}, {self.kept(exponent)})", Sort.NUMBER, grows=True)
+            text, grows = f"raised({base.text}, {exponent.text})", vector or base.grows
+        else:
+            text, grows = f"power({self.kept(base)}, {self.kept(exponent)})", vector
+        return Expr(text, Sort.NUMBER, grows=grows, bound=math.inf if grows else LARGEST)
 
     def _comparison(self, operator: str, left: Expr, right: Expr) -> Expr:
         plain = (Sort.NUMBER, Sort.NUMBER)
@@ -272,7 +292,7 @@ class Emitter:
         if expr.sort is Sort.NUMBER:
             return expr
         if expr.sort is Sort.LOGICAL:
-            return Expr(f"1.0*{expr.text}", Sort.NUMBER, Level.PRODUCT)
+            return Expr(f"1.0*{expr.text}", Sort.NUMBER, Level.PRODUCT, bound=1.0)
         if self.dialect.vector:
             raise Opaque
         return Expr(f"number_of({expr.text})", Sort.NUMBER)
@@ -309,6 +329,15 @@ class Emitter:
         if self.branching:
             self.conditional.add(guard)
         return f"({guard} := {expr.text})"
+
+
+def _bound(operator: str, a: Expr, b: Expr) -> float:
+    """A magnitude that the operation cannot exceed; infinite or NaN where there is none."""
+    if operator == "*":
+        return a.bound * b.bound
+    if operator == "/":
+        return a.bound / b.bound if b.fixed and b.bound else math.inf
+    return a.bound + b.bound
 
 
 def _lined_up(block: Block, cell: Cell) -> Cell | None:

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import math
 import re
+import sys
 from enum import Enum
 from typing import NamedTuple
 
@@ -27,7 +29,8 @@ class Level(Enum):
 
 
 class Expr(NamedTuple):
-    """The text of an expression; `grows` where it may overflow to infinity without raising."""
+    """The text of an expression; `grows` where it may overflow to infinity without raising, or,
+    over vectors, become NaN. `bound` is a magnitude that it cannot exceed."""
 
     text: str
     sort: Sort
@@ -35,6 +38,7 @@ class Expr(NamedTuple):
     grows: bool = False
     fixed: bool = False
     value: Value = None
+    bound: float = math.inf
 
 
 class Opaque(Exception):
@@ -60,6 +64,9 @@ REAL = Dialect("({1} if {0} else {2})", vector=False, guards=True)
 ARRAY = Dialect("choose({0}, {1}, {2})", vector=True, guards=True)
 ELEMENT = Dialect("({1} if {0} else {2})", vector=False, guards=False)
 """The real kind within an array: one element of the vectors at a time."""
+
+LARGEST = sys.float_info.max
+"""What a function that raises on overflow cannot exceed."""
 
 VARIABLE = re.compile(r"\b[vlg]\d+\b")
 """The names of chain cells, local variables and guards in the text."""
