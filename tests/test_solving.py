@@ -164,6 +164,10 @@ def test_labels_and_units_are_those_beside_the_cells() -> None:
             "E5": "Head",
             "E6": 1,
             "E7": 2,
+            "G5": "kJ/(kg K)",
+            "G6": 4.2,
+            "H5": "Flow (m3/s)",
+            "H6": 1,
             "A9": "x",
             "B9": 1,
             "C9": "y",
@@ -179,6 +183,8 @@ def test_labels_and_units_are_those_beside_the_cells() -> None:
     assert unit_of(book, book.cell("B1")) == "m"
     assert unit_of(book, book.cell("B2")) == "kN/m"
     assert unit_of(book, book.cell("B9")) == ""
+    assert (label_of(book, book.cell("G6")), unit_of(book, book.cell("G6"))) == ("kJ/(kg K)", "")
+    assert (label_of(book, book.cell("H6")), unit_of(book, book.cell("H6"))) == ("Flow", "m3/s")
 
 
 def moved(contents: dict[str, Content]) -> dict[str, Content]:

@@ -19,7 +19,7 @@ FARTHEST_UP = 60
 LONGEST_UNIT = 16
 """A text of more letters beside a number is a remark, not a unit."""
 
-_BRACKETED = re.compile(r"^(.*?)\s*[\[(]([^\[\]()]{1,16})[\])]\s*[:=]?\s*$")
+_BRACKETED = re.compile(r"^(.*?)(?:\s+\(|\s*\[)([^\[\]()]{1,16})[\])]\s*[:=]?\s*$")
 
 
 def label_of(book: Book, cell: Cell) -> str:

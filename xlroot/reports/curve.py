@@ -99,7 +99,10 @@ def _limits(values: list[float]) -> tuple[float, float, bool]:
     if not usual or sizes[-1] <= SPIKE * usual:
         return bottom, top, False
     limit = _round_up(2.0 * usual)
-    return max(bottom, -limit), min(top, limit), True
+    # Ends of the axis are round numbers, so that its ticks are.
+    below = -_round_up(-bottom) if bottom < 0.0 else 0.0
+    above = _round_up(top) if top > 0.0 else 0.0
+    return max(below, -limit), min(above, limit), True
 
 
 def _round_up(number: float) -> float:
