@@ -11,7 +11,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from xlroot.book import Book, Formula
+from xlroot.book import Book, Formula, is_linked
 from xlroot.catalogue import did_you_mean
 from xlroot.cells import LAST_COLUMN, LAST_ROW, Block, Cell
 from xlroot.errors import AddressError, FormulaError, Unsupported
@@ -118,6 +118,8 @@ def _area(node: Reference, place: _Place) -> Node:
 
 
 def _sheet(name: str, place: _Place) -> str:
+    if is_linked(name) and place.book.has_sheet(name):
+        return place.book.sheet_name(name)
     if "[" in name or "|" in name or "/" in name or "\\" in name:
         raise place.refuse(
             f"refers to another workbook ({name}); copy the value into this workbook"

@@ -91,9 +91,18 @@ class Sheet(Protocol):
         ...
 
 
+def is_linked(sheet: str) -> bool:
+    """Whether a sheet's name, such as `[1]Data`, means a sheet of another workbook."""
+    return sheet.startswith("[")
+
+
 @dataclass(frozen=True, slots=True)
 class Book:
-    """A workbook as it was saved: sheets in order, names, tables, and where it came from."""
+    """A workbook as it was saved: sheets in order, names, tables, and where it came from.
+
+    Sheets of other workbooks that it links to stand beside its own under names such as `[1]Data`,
+    with the values that the host last saved of them.
+    """
 
     title: str
     sheet_by_name: Mapping[str, Sheet]
@@ -112,8 +121,8 @@ class Book:
 
     @property
     def sheets(self) -> tuple[str, ...]:
-        """The sheets' names, in order."""
-        return tuple(self.sheet_by_name)
+        """The sheets' names, in order; not those of linked workbooks."""
+        return tuple(name for name in self.sheet_by_name if not is_linked(name))
 
     def sheet_name(self, name: str) -> str:
         """The name as the book spells it; AddressError, with the nearest, if there is none."""

@@ -170,7 +170,12 @@ class Ledger:
         formula = self.book.formula(cell)
         if formula is None:
             master = self.bindings.master(cell)
-            assert master is not None
+            if master is None:
+                raise Unsupported(
+                    "lies in another workbook, and its value was not saved with the link; open "
+                    "both, recalculate and save",
+                    str(cell),
+                )
             down, right = cell.row - master.row, cell.column - master.column
             return grid_part(self._array(master), down, right)
         if formula.block is not None:

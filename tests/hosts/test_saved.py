@@ -215,6 +215,46 @@ def test_shared_formulas_texts_and_faults(tmp_path: Path) -> None:
     assert xlroot.evaluate(book, "B2") == 1.0
 
 
+def linked_book(path: Path) -> Path:
+    """A book whose A2 and B2 read another workbook, of which only A1 was saved."""
+    rows = (
+        '<row r="1"><c r="A1"><v>2</v></c></row><row r="2"><c r="A2"><f>A1-[1]Data!A1</f>'
+        '<v>-5</v></c><c r="B2"><f>A1-[1]Data!B7</f><v>1</v></c></row>'
+    )
+    workbook = (
+        f'<workbook xmlns="{MAIN}" xmlns:r="{OFFICE}"><sheets><sheet name="S" sheetId="1" '
+        'r:id="r1"/></sheets><externalReferences><externalReference r:id="r9"/>'
+        "</externalReferences></workbook>"
+    )
+    made = package(path, sheet_xml(rows), workbook=workbook)
+    with zipfile.ZipFile(made) as old:
+        parts = {name: old.read(name) for name in old.namelist()}
+    relation = f'<Relationship Id="r9" Type="{OFFICE}/externalLink" Target="externalLinks/e1.xml"/>'
+    rels = "xl/_rels/workbook.xml.rels"
+    closing = "</Relationships>"
+    parts[rels] = parts[rels].decode().replace(closing, relation + closing).encode()
+    parts["xl/externalLinks/e1.xml"] = (
+        f'<externalLink xmlns="{MAIN}"><externalBook><sheetNames><sheetName val="Data"/>'
+        '</sheetNames><sheetDataSet><sheetData sheetId="0"><row r="1"><cell r="A1"><v>7</v>'
+        "</cell></row></sheetData></sheetDataSet></externalBook></externalLink>"
+    ).encode()
+    with zipfile.ZipFile(made, "w") as new:
+        for name, content in parts.items():
+            new.writestr(name, content)
+    return made
+
+
+def test_linked_workbooks_count_where_their_values_were_saved(tmp_path: Path) -> None:
+    book = read_book(linked_book(tmp_path / "linked.xlsx"))
+    assert book.sheets == ("S",)
+    record = xlroot.solve(book, residual="A2", unknown="A1", low=0, high=20)
+    assert record.root == 7.0
+    assert [str(line.cell) for line in record.held] == ["'[1]Data'!A1"]
+    refused = xlroot.solve(book, residual="B2", unknown="A1", low=0, high=20)
+    assert refused.refused
+    assert "another workbook" in refused.verdict.reason
+
+
 def test_precision_as_displayed_is_refused(tmp_path: Path) -> None:
     workbook = (
         f'<workbook xmlns="{MAIN}" xmlns:r="{OFFICE}"><sheets><sheet name="S" sheetId="1" '

@@ -9,6 +9,7 @@ from pathlib import Path
 from xlroot.book import Book, Name, Table
 from xlroot.cells import Block, parse_address
 from xlroot.errors import AddressError, BookError
+from xlroot.hosts.links import LinkedSheet, linked_sheets
 from xlroot.hosts.package import Package, local, open_package
 from xlroot.hosts.sheetxml import SavedSheet, shared_strings
 
@@ -41,6 +42,11 @@ def read_book(path: str | Path) -> Book:
     if not sheets:
         raise BookError(f"{package.path.name} holds no sheets")
     order = list(sheets)
+    linked: dict[str, LinkedSheet] = {}
+    for number, identifier in enumerate(content.links, start=1):
+        kind, part = targets.get(identifier, ("", ""))
+        if kind == "externalLink" and package.has(part):
+            linked |= linked_sheets(package, part, number)
     names = tuple(
         Name(name, text.strip().removeprefix("="), None if scope is None else order[scope])
         for name, text, scope in content.names
@@ -48,7 +54,7 @@ def read_book(path: str | Path) -> Book:
     )
     return Book(
         package.path.name,
-        sheets,
+        {**sheets, **linked},
         names,
         tuple(tables),
         package.digest,
@@ -63,6 +69,7 @@ class _Workbook:
     def __init__(self) -> None:
         self.sheets: list[tuple[str, str]] = []
         self.names: list[tuple[str, str, int | None]] = []
+        self.links: list[str] = []
         self.starts_1904 = False
         self.rounds_as_shown = False
         self._name: tuple[str, int | None] | None = None
@@ -70,11 +77,12 @@ class _Workbook:
 
     def start(self, tag: str, attributes: dict[str, str]) -> None:
         tag = local(tag)
-        if tag == "sheet":
-            identifier = next(
-                (value for key, value in attributes.items() if local(key) == "id" and ":" in key),
-                "",
-            )
+        identifier = next(
+            (value for key, value in attributes.items() if local(key) == "id" and ":" in key), ""
+        )
+        if tag == "externalReference":
+            self.links.append(identifier)
+        elif tag == "sheet":
             self.sheets.append((attributes.get("name", ""), identifier))
         elif tag == "workbookPr":
             self.starts_1904 = attributes.get("date1904", "0") in ("1", "true", "on")
