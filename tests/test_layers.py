@@ -32,6 +32,7 @@ ORDER = [
     "chain",
     "emit",
     "runtime",
+    "frame",
     "program",
     "labels",
     "question",

@@ -13,8 +13,9 @@ from dataclasses import dataclass
 from xlroot.book import Unsaved
 from xlroot.cells import Cell
 from xlroot.formula import Area, Binary, Call, Node, Unary
+from xlroot.frame import Frame
 from xlroot.interpret import Scope, evaluate, single
-from xlroot.program import Frame, Program
+from xlroot.program import Program
 from xlroot.values import Fault, Operand, Value
 
 AGREEMENT = 1e-9

@@ -10,64 +10,27 @@ from __future__ import annotations
 
 import re
 import sys
-from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable
 from functools import cached_property
 from typing import TYPE_CHECKING, Any
 
 from xlroot.cells import Block, Cell
 from xlroot.chain import Chain
 from xlroot.emit import ARRAY, ELEMENT, REAL, Emitter, Expr, Opaque, Sort
-from xlroot.formula import Call, Node
+from xlroot.formula import Node
+from xlroot.frame import Frame
 from xlroot.interpret import Mode, Scope, by_element, evaluate, formula_value, single
 from xlroot.kinds import array as array_kind
 from xlroot.kinds.real import PRIMITIVES
 from xlroot.ledger import Ledger, array_result, grid_part
 from xlroot.runtime import CAUGHT, HELPERS, NotPlain
-from xlroot.values import Fault, Grid, Operand, Value, to_number
+from xlroot.values import Fault, Grid, Value, to_number
 
 if TYPE_CHECKING:
     import numpy as np
 
 BLOCK = 2048
 """Trial values that the array kind computes at a time: vectors that stay in the cache."""
-
-
-@dataclass(frozen=True, slots=True)
-class Frame:
-    """The contents of cells at one trial value: chain cells as given, others as held."""
-
-    ledger: Ledger
-    values: Mapping[Cell, Value]
-    moving: Callable[[Block], bool]
-
-    def value(self, cell: Cell) -> Value:
-        found = self.values.get(cell, _ABSENT)
-        return self.ledger.value(cell) if isinstance(found, _Absent) else found
-
-    def grid(self, block: Block) -> Grid:
-        if not self.moving(block):
-            return self.ledger.grid(block)
-        used = self.ledger.book.clipped(block)
-        columns = range(used.left, used.right + 1)
-        rows = tuple(
-            tuple(self.value(Cell(block.sheet, row, column)) for column in columns)
-            for row in range(used.top, used.bottom + 1)
-        )
-        return Grid(rows, block)
-
-    def locate(self, text: str, home: Cell) -> Block | None:
-        return self.ledger.locate(text, home)
-
-    def own(self, node: Call, cell: Cell) -> Operand:
-        return self.ledger.own(node, cell)
-
-
-class _Absent:
-    pass
-
-
-_ABSENT = _Absent()
 
 
 class Program:

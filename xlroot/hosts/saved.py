@@ -36,7 +36,7 @@ def read_book(path: str | Path) -> Book:
         own = part if kind == "worksheet" else None
         if own is not None and not package.has(own):
             raise BookError(f"{package.path.name} is damaged: the sheet {name} is missing")
-        sheets[name] = SavedSheet(name, package, own, strings)
+        sheets[name] = SavedSheet(name, package, own, strings, content.starts_1904)
         if own is not None:
             tables.extend(_tables(package, own, name))
     if not sheets:

@@ -31,6 +31,7 @@ class SavedSheet:
     package: Package
     part: str | None
     strings: Callable[[], Sequence[str]]
+    starts_1904: bool = False
 
     @cached_property
     def _bytes(self) -> bytes:
@@ -135,7 +136,7 @@ class SavedSheet:
         if raw.kind == "e":
             return FAULTS.get(text.strip(), Fault.UNKNOWN)
         if raw.kind == "d":
-            return _serial(text.strip())
+            return _serial(text.strip(), 1462.0 if self.starts_1904 else 0.0)
         raise BookError(f"{self.package.path.name}: a cell of {self.name} is of type {raw.kind}")
 
     def _shared_string(self, text: str) -> str:
@@ -215,7 +216,7 @@ def _number(text: str, sheet: SavedSheet) -> float:
         ) from None
 
 
-def _serial(text: str) -> Value:
+def _serial(text: str, offset: float) -> Value:
     """An ISO 8601 date as the number of days since the end of 1899 (section 18.17.4)."""
     from datetime import datetime
 
@@ -225,7 +226,7 @@ def _serial(text: str) -> Value:
     year, month, day, hour, minute, second = match.groups()
     days = (datetime(int(year), int(month), int(day)) - datetime(1899, 12, 30)).days
     clock = int(hour or 0) * 3600 + int(minute or 0) * 60 + float(second or 0)
-    return float(days) + clock / 86400.0
+    return float(days) - offset + clock / 86400.0
 
 
 def shared_strings(package: Package, part: str) -> list[str]:
